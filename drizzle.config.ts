@@ -4,4 +4,5 @@ export default defineConfig({
   dialect: 'sqlite',
   schema: './app/db/schema.ts',
   out: './drizzle',
+  casing: 'snake_case',
 })

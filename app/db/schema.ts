@@ -1,0 +1,261 @@
+import { sql } from 'drizzle-orm'
+import { blob, index, integer, primaryKey, real, sqliteTable, text, unique } from 'drizzle-orm/sqlite-core'
+import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { ChannelStatus } from '../protocol/messages.ts'
+
+const id = () =>
+  text()
+    .primaryKey()
+    .$defaultFn(() => crypto.randomUUID())
+const at = () => integer({ mode: 'timestamp_ms' })
+const createdAt = () =>
+  at()
+    .notNull()
+    .default(sql`(unixepoch('subsec') * 1000)`)
+
+export const people = sqliteTable('people', {
+  id: id(),
+  email: text().notNull().unique(),
+  name: text().notNull(),
+  role: text({ enum: ['technician', 'instructor', 'student'] }).notNull(),
+  passwordHash: text().notNull(),
+  roomLight: text({ enum: ['lit', 'dark'] })
+    .notNull()
+    .default('lit'),
+  createdAt: createdAt(),
+  disabledAt: at(),
+})
+
+/** A session is a row, so that it can be revoked. The cookie holds its id, signed. */
+export const sessions = sqliteTable(
+  'sessions',
+  {
+    id: id(),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    createdAt: createdAt(),
+    lastSeenAt: createdAt(),
+    expiresAt: at().notNull(),
+    revokedAt: at(),
+  },
+  (table) => [index('sessions_person').on(table.personId)],
+)
+
+/** The cautions as acknowledged: once a person and a term, in the wording of that version. */
+export const acknowledgements = sqliteTable(
+  'acknowledgements',
+  {
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    term: text().notNull(),
+    cautionsVersion: integer().notNull(),
+    acknowledgedAt: createdAt(),
+  },
+  (table) => [primaryKey({ columns: [table.personId, table.term, table.cautionsVersion] })],
+)
+
+export const benches = sqliteTable('benches', {
+  id: text().primaryKey(),
+  name: text().notNull(),
+  place: text().notNull(),
+  createdAt: createdAt(),
+})
+
+/** Each save is a new revision; a reading keeps the one that it was taken under. */
+export const benchRevisions = sqliteTable(
+  'bench_revisions',
+  {
+    benchId: text()
+      .notNull()
+      .references(() => benches.id),
+    revision: integer().notNull(),
+    config: text({ mode: 'json' }).$type<BenchConfig>().notNull(),
+    personId: text().references(() => people.id),
+    note: text().notNull().default(''),
+    createdAt: createdAt(),
+  },
+  (table) => [primaryKey({ columns: [table.benchId, table.revision] })],
+)
+
+export const classes = sqliteTable('classes', { id: id(), name: text().notNull(), createdAt: createdAt() })
+
+export const classMembers = sqliteTable(
+  'class_members',
+  {
+    classId: text()
+      .notNull()
+      .references(() => classes.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+  },
+  (table) => [primaryKey({ columns: [table.classId, table.personId] }), index('class_members_person').on(table.personId)],
+)
+
+export const classBenches = sqliteTable(
+  'class_benches',
+  {
+    classId: text()
+      .notNull()
+      .references(() => classes.id),
+    benchId: text()
+      .notNull()
+      .references(() => benches.id),
+  },
+  (table) => [primaryKey({ columns: [table.classId, table.benchId] })],
+)
+
+/** Every change asked of a bench: setpoints, outputs, controls, make safe. Who, when, what was asked, what the bridge answered. */
+export const benchCommands = sqliteTable(
+  'bench_commands',
+  {
+    id: id(),
+    benchId: text().references(() => benches.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    askedAt: createdAt(),
+    kind: text().notNull(),
+    asked: text({ mode: 'json' }).$type<Record<string, unknown>>().notNull(),
+    /** Null until the bridge has answered; 'unanswered' when it did not. */
+    outcome: text({ enum: ['accepted', 'refused', 'unanswered'] }),
+    answer: text(),
+    answeredAt: at(),
+  },
+  (table) => [index('bench_commands_bench').on(table.benchId, table.askedAt)],
+)
+
+/** What happened, as the bridge tells it. A bridge numbers its events; what is already here is ignored. */
+export const benchEvents = sqliteTable(
+  'bench_events',
+  {
+    bridgeId: text().notNull(),
+    sequence: integer().notNull(),
+    benchId: text(),
+    kind: text().notNull(),
+    happenedAt: at().notNull(),
+    personId: text(),
+    personName: text(),
+    sentence: text().notNull(),
+    data: text({ mode: 'json' }).$type<Record<string, unknown>>().notNull(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.bridgeId, table.sequence] }),
+    index('bench_events_bench').on(table.benchId, table.happenedAt),
+  ],
+)
+
+export const channelSummaries = sqliteTable(
+  'channel_summaries',
+  {
+    bridgeId: text().notNull(),
+    sequence: integer().notNull(),
+    benchId: text().notNull(),
+    second: integer().notNull(),
+    channel: text().notNull(),
+    min: real().notNull(),
+    mean: real().notNull(),
+    max: real().notNull(),
+    count: integer().notNull(),
+  },
+  (table) => [
+    primaryKey({ columns: [table.bridgeId, table.sequence] }),
+    index('channel_summaries_bench').on(table.benchId, table.second),
+  ],
+)
+
+/** A series of readings on one bench: the logbook's page. */
+export const runs = sqliteTable(
+  'runs',
+  {
+    id: id(),
+    benchId: text()
+      .notNull()
+      .references(() => benches.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    startedAt: createdAt(),
+    endedAt: at(),
+  },
+  (table) => [index('runs_bench').on(table.benchId, table.startedAt)],
+)
+
+/** A captured window. Values as measured, in SI, never overwritten. */
+export const readings = sqliteTable(
+  'readings',
+  {
+    id: id(),
+    runId: text()
+      .notNull()
+      .references(() => runs.id),
+    number: integer().notNull(),
+    benchId: text().notNull(),
+    revision: integer().notNull(),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    capturedAt: at().notNull(),
+    windowSeconds: real().notNull(),
+    polarity: integer().notNull(),
+    anodeVolts: real().notNull(),
+    uAnodeVolts: real().notNull(),
+    anodeEffectiveCount: real().notNull(),
+    coilAmps: real().notNull(),
+    uCoilAmps: real().notNull(),
+    coilEffectiveCount: real().notNull(),
+    states: text({ mode: 'json' }).$type<Partial<Record<string, ChannelStatus>>>().notNull(),
+  },
+  (table) => [unique().on(table.runId, table.number)],
+)
+
+/** The raw samples of a reading: one row a channel, little-endian float64, NaN where there was no reading. */
+export const readingSamples = sqliteTable(
+  'reading_samples',
+  {
+    readingId: text()
+      .notNull()
+      .references(() => readings.id),
+    channel: text().notNull(),
+    timesSeconds: blob({ mode: 'buffer' }).notNull(),
+    values: blob({ mode: 'buffer' }).notNull(),
+    mean: real(),
+    standardDeviation: real(),
+    standardError: real(),
+    effectiveCount: real(),
+    count: integer().notNull(),
+  },
+  (table) => [primaryKey({ columns: [table.readingId, table.channel] })],
+)
+
+/** The edges as one person read them off the scale. A correction is a new row; the newest of a person counts. */
+export const edges = sqliteTable(
+  'edges',
+  {
+    id: id(),
+    readingId: text()
+      .notNull()
+      .references(() => readings.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    leftMetres: real().notNull(),
+    rightMetres: real().notNull(),
+    enteredAt: createdAt(),
+  },
+  (table) => [index('edges_reading').on(table.readingId)],
+)
+
+/** A reading is struck with a reason, never deleted. */
+export const strikes = sqliteTable('strikes', {
+  readingId: text()
+    .primaryKey()
+    .references(() => readings.id),
+  personId: text()
+    .notNull()
+    .references(() => people.id),
+  reason: text().notNull(),
+  struckAt: createdAt(),
+})
