@@ -6,10 +6,11 @@ import { data, type MiddlewareFunction } from 'react-router'
  */
 export const sameOrigin: MiddlewareFunction<Response> = ({ request }, next) => {
   const url = new URL(request.url)
-  if (request.method === 'GET' || request.method === 'HEAD' || url.pathname.startsWith('/api/bridge/')) return next()
+  if (request.method === 'GET' || request.method === 'HEAD' || url.pathname.startsWith('/api/bridge/'))
+    return next()
   const origin = request.headers.get('Origin')
   const host = request.headers.get('Host') ?? url.host
-  if (origin === null || origin === 'null' || new URL(origin).host !== host)
+  if (origin === null || !URL.canParse(origin) || new URL(origin).host !== host)
     throw data('This was sent from another site and was refused.', { status: 403 })
   return next()
 }

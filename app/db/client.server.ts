@@ -23,9 +23,15 @@ const queues = new WeakMap<Client, Promise<unknown>>()
  * One writer: a transaction waits for the one before it. A second transaction of the same process would otherwise wait
  * inside SQLite, where it blocks the event loop. Do only SQL in `work`.
  */
-export function write<T>(db: Database, work: (tx: Parameters<Parameters<Database['transaction']>[0]>[0]) => Promise<T>): Promise<T> {
+export function write<T>(
+  db: Database,
+  work: (tx: Parameters<Parameters<Database['transaction']>[0]>[0]) => Promise<T>,
+): Promise<T> {
   const before = queues.get(db.$client) ?? Promise.resolve()
   const run = before.then(() => db.transaction(work, { behavior: 'immediate' }))
-  queues.set(db.$client, run.catch(() => {}))
+  queues.set(
+    db.$client,
+    run.catch(() => {}),
+  )
   return run
 }

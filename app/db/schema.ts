@@ -8,10 +8,7 @@ const id = () =>
     .primaryKey()
     .$defaultFn(() => crypto.randomUUID())
 const at = () => integer({ mode: 'timestamp_ms' })
-const createdAt = () =>
-  at()
-    .notNull()
-    .default(sql`(unixepoch('subsec') * 1000)`)
+const createdAt = () => at().notNull().default(sql`(unixepoch('subsec') * 1000)`)
 
 export const people = sqliteTable('people', {
   id: id(),
@@ -91,7 +88,10 @@ export const classMembers = sqliteTable(
       .notNull()
       .references(() => people.id),
   },
-  (table) => [primaryKey({ columns: [table.classId, table.personId] }), index('class_members_person').on(table.personId)],
+  (table) => [
+    primaryKey({ columns: [table.classId, table.personId] }),
+    index('class_members_person').on(table.personId),
+  ],
 )
 
 export const classBenches = sqliteTable(

@@ -1,0 +1,32 @@
+import { href, useFetcher, useLocation, useRouteLoaderData } from 'react-router'
+import type { loader } from '../root.tsx'
+
+/** The two looks of the interface. It changes at once; the server stores it and the reload renders it. */
+export function RoomLightSwitch() {
+  const fetcher = useFetcher()
+  const location = useLocation()
+  const stored = useRouteLoaderData<typeof loader>('root')?.roomLight ?? 'lit'
+  const light = fetcher.formData?.get('roomLight') ?? stored
+  return (
+    <fetcher.Form method="post" action={href('/room-light')} className="flex items-center gap-2">
+      <span className="text-ink-soft max-sm:sr-only" id="room-light">
+        room light
+      </span>
+      <input type="hidden" name="returnTo" value={location.pathname + location.search} />
+      <fieldset aria-labelledby="room-light" className="flex rounded-sm border border-edge">
+        {(['dark', 'lit'] as const).map((value) => (
+          <button
+            key={value}
+            type="submit"
+            name="roomLight"
+            value={value}
+            aria-pressed={light === value}
+            className="min-h-8 cursor-pointer px-2.5 text-ink-soft aria-pressed:bg-ink aria-pressed:text-ground"
+          >
+            {value}
+          </button>
+        ))}
+      </fieldset>
+    </fetcher.Form>
+  )
+}

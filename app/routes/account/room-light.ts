@@ -1,0 +1,23 @@
+import { eq } from 'drizzle-orm'
+import { data, redirect } from 'react-router'
+import { localPath } from '../../auth/local-path.ts'
+import { roomLightCookie, roomLightSchema } from '../../auth/room-light.server.ts'
+import { getPerson } from '../../auth/sessions.server.ts'
+import { databaseContext } from '../../context.ts'
+import { people } from '../../db/schema.ts'
+import type { Route } from './+types/room-light'
+
+export const loader = () => redirect('/')
+
+/** Stored with the account, and in a cookie. Without scripts the browser is sent back to where it was. */
+export async function action({ request, context }: Route.ActionArgs) {
+  const form = await request.formData()
+  const light = roomLightSchema.safeParse(form.get('roomLight'))
+  if (!light.success) throw data('The room light is lit or dark.', { status: 400 })
+  const db = context.get(databaseContext)
+  const person = await getPerson(db, request)
+  if (person) await db.update(people).set({ roomLight: light.data }).where(eq(people.id, person.id))
+  return redirect(localPath(form.get('returnTo')), {
+    headers: { 'Set-Cookie': await roomLightCookie(light.data) },
+  })
+}

@@ -1,0 +1,3 @@
+import { href, redirect } from 'react-router'
+
+export const loader = () => redirect(href('/hall'))
