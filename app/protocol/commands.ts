@@ -80,6 +80,12 @@ export type CaptureReply = z.infer<typeof captureReplySchema>
 /** POST /make-safe: the whole room. */
 export const makeSafeRequestSchema = z.object({ actor: actorSchema })
 
+/** What was commanded and measured on each bench, in a sentence that names the steps not confirmed. */
+export const makeSafeReplySchema = z.object({
+  benches: z.array(z.object({ benchId: z.string(), answer: z.string() })),
+})
+export type MakeSafeReply = z.infer<typeof makeSafeReplySchema>
+
 /** PUT /configuration, and the answer of the app's GET /api/bridge/configuration. */
 export const configurationSchema = z.object({ benches: z.array(benchConfigSchema) })
 
@@ -99,7 +105,10 @@ export const summarySchema = z.object({
 })
 export type Summary = z.infer<typeof summarySchema>
 
-/** POST /api/bridge/spool at the app. Sequences rise without gaps; the app ignores what it has and confirms the highest. */
+/**
+ * POST /api/bridge/spool at the app. Each of the two sequences begins at 1 and rises without gaps. The app ignores what
+ * it has and confirms the highest number up to which it has all; 0 is none.
+ */
 export const spoolBatchSchema = z.object({
   bridgeId: z.string(),
   events: z.array(benchEventSchema),

@@ -10,7 +10,8 @@ export const signatureSeconds = 60
 
 /**
  * The text whose HMAC-SHA256 (hex, key: the shared bridge secret) is the signature of a request.
- * `path` includes the query; `body` is the text as sent, empty for none.
+ * `path` includes the query; `body` is the text as sent, empty for none. `time` is the sender's clock in seconds since
+ * 1970, as decimal text; `nonce` is any text of 16 to 64 characters that the sender never uses again.
  */
 export function requestText(request: {
   method: string
