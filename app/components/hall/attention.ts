@@ -1,0 +1,40 @@
+import type { BenchState } from '../../protocol/messages.ts'
+
+export type Attention = 'trip' | 'caution' | 'none'
+
+/** The line at the foot of a bench's tile, and how loudly it is said. */
+export function benchSummary(state: BenchState | null): {
+  attention: Attention
+  words: string
+  rank: number
+} {
+  if (!state) return { attention: 'caution', words: 'no word from the bridge: treat as live', rank: 1 }
+  if (state.phase === 'tripped' && state.trip)
+    return { attention: 'trip', words: state.trip.happened, rank: 0 }
+  if (state.phase === 'lost')
+    return { attention: 'caution', words: 'line lost, voltage unknown: treat as live', rank: 1 }
+  const warning = state.warnings[0]
+  if (warning) return { attention: 'caution', words: warning, rank: 2 }
+  return { attention: 'none', words: quietWords(state), rank: 3 }
+}
+
+function quietWords({ phase, controls, warmUp, channels }: BenchState): string {
+  const who = controls ? `${controls.name} · ` : ''
+  if (phase === 'unconfigured') return 'not commissioned'
+  if (phase === 'off') return `${who}off`
+  if (phase === 'warming')
+    return `${who}warming ${Math.floor(warmUp.elapsedSeconds)} of ${Math.round(warmUp.requiredSeconds)} s`
+  if (phase === 'ready') return `${who}warm, anode off`
+  const states = [channels.anodeVolts?.state, channels.coilAmps?.state]
+  const word = ['stale', 'noisy', 'drifting', 'settling'].find((it) => states.some((state) => state === it))
+  return `${who}${word ?? 'settled'}`
+}
+
+/** Benches by need of attention, then by name: 'Bench 2' before 'Bench 10'. */
+export function byAttention<T extends { name: string; state: BenchState | null }>(benches: T[]): T[] {
+  return [...benches].sort(
+    (a, b) =>
+      benchSummary(a.state).rank - benchSummary(b.state).rank ||
+      a.name.localeCompare(b.name, 'en', { numeric: true }),
+  )
+}

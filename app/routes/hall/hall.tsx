@@ -1,0 +1,107 @@
+import { useRouteLoaderData } from 'react-router'
+import { may } from '../../auth/capabilities.ts'
+import { listVisibleBenches } from '../../benches/visible-benches.server.ts'
+import { BenchTile, type TileBench } from '../../components/hall/bench-tile.tsx'
+import { HoldButton } from '../../components/hall/hold-button.tsx'
+import { useAttentionOrder } from '../../components/hall/use-attention-order.ts'
+import { PageFrame } from '../../components/page-frame.tsx'
+import { databaseContext, personContext } from '../../context.ts'
+import type { loader as rootLoader } from '../../root.tsx'
+import {
+  Telemetry,
+  useLink,
+  useMakeSafe,
+  useMakeSafeReport,
+  useTelemetryStore,
+} from '../../telemetry/telemetry.tsx'
+import type { Route } from './+types/hall'
+
+export async function loader({ context }: Route.LoaderArgs) {
+  const person = context.get(personContext)
+  const benches = await listVisibleBenches(context.get(databaseContext), person)
+  return {
+    benches: benches.map(
+      ({ id, name, place, config }): TileBench => ({
+        id,
+        name,
+        place,
+        bulbRadiusMetres: config.tube.bulbRadiusMetres,
+        gun: config.gun,
+      }),
+    ),
+    mayMakeSafe: may(person.role, 'make-bench-safe'),
+    mayMakeRoomSafe: may(person.role, 'make-room-safe'),
+  }
+}
+
+export default function Hall({ loaderData }: Route.ComponentProps) {
+  const socketUrl = useRouteLoaderData<typeof rootLoader>('root')?.socketUrl ?? ''
+  return (
+    <Telemetry socketUrl={socketUrl}>
+      <title>Hall · Coilside</title>
+      <PageFrame
+        where={
+          <h1>
+            <b className="font-medium">Hall</b>{' '}
+            <span className="text-ink-soft">
+              {loaderData.benches.length === 1 ? '1 bench' : `${loaderData.benches.length} benches`}
+            </span>
+          </h1>
+        }
+        makeSafe={loaderData.mayMakeRoomSafe && <RoomMakeSafe />}
+      >
+        <LinkLine />
+        <Tiles benches={loaderData.benches} maySafe={loaderData.mayMakeSafe} />
+      </PageFrame>
+    </Telemetry>
+  )
+}
+
+function RoomMakeSafe() {
+  const makeSafe = useMakeSafe()
+  return (
+    <>
+      <span id="room-make-safe" className="sr-only">
+        Commands every output of the room off. Hold for a second, or press twice within three seconds by
+        keyboard.
+      </span>
+      <HoldButton describedBy="room-make-safe" onHeld={() => makeSafe(null)}>
+        Make room safe: hold
+      </HoldButton>
+    </>
+  )
+}
+
+/** What the link to the bridge is doing when it is not simply there, and the answer to the last make safe. */
+function LinkLine() {
+  const link = useLink()
+  const report = useMakeSafeReport()
+  return (
+    <div className="mb-3 grid gap-2 empty:hidden">
+      {link.kind === 'refused' && <p className="hatch border border-caution px-3 py-2">{link.reason}</p>}
+      {link.kind === 'reconnecting' && (
+        <p className="hatch border border-caution px-3 py-2">
+          No word from the bridge. What is shown is old: treat every bench as live. Connecting again…
+        </p>
+      )}
+      {report && <p className="border border-ink px-3 py-2">{report.sentence}</p>}
+    </div>
+  )
+}
+
+function Tiles({ benches, maySafe }: { benches: TileBench[]; maySafe: boolean }) {
+  const ordered = useAttentionOrder(useTelemetryStore(), benches)
+  if (benches.length === 0)
+    return (
+      <p className="max-w-prose">
+        No bench is open to you yet. Benches come with a class: ask your instructor to add you to it.
+      </p>
+    )
+  return (
+    <div className="grid grid-cols-[repeat(auto-fill,minmax(min(290px,100%),1fr))] gap-3.5">
+      {ordered.map((bench) => (
+        <BenchTile key={bench.id} bench={bench} maySafe={maySafe} />
+      ))}
+    </div>
+  )
+}
