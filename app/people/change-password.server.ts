@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm'
 import { hashPassword, passwordMatches } from '../auth/password.server.ts'
 import { endOtherSessions } from '../auth/sessions.server.ts'
+import { revokeResumeKeys } from '../bridge-link/bridge-client.server.ts'
 import type { Person } from '../context.ts'
 import type { Database } from '../db/client.server.ts'
 import { people } from '../db/schema.ts'
@@ -24,6 +25,7 @@ export async function changePassword(
     .set({ passwordHash: await hashPassword(next) })
     .where(eq(people.id, person.id))
   await endOtherSessions(db, person.id, person.sessionId)
+  void revokeResumeKeys(person.id)
   // The password has changed whether or not the notice arrives.
   await sendMail({
     to: person.email,
