@@ -1,0 +1,127 @@
+import type { BenchView } from '#app/benches/bench-view.server.ts'
+import type { BenchState } from '#app/protocol/messages.ts'
+import { useBridgeSeconds, useLink } from '#app/telemetry/telemetry.tsx'
+import { AnswerLine } from '../answer-line.tsx'
+import { age } from '../figures.ts'
+import { DeadManWarning } from './dead-man-warning.tsx'
+import { lowerFirst, resetWaitsFor, shutdownSentence } from './shutdown-words.ts'
+import { useCommand } from './use-command.ts'
+
+type Props = { view: BenchView; state: BenchState | null }
+
+/** What needs a person now, above everything else of the page: link, line, trip, dead-man, warnings. */
+export function Banners({ view, state }: Props) {
+  return (
+    <div className="grid gap-2 empty:hidden">
+      <LinkBanner />
+      {state?.phase === 'lost' && <LostBanner state={state} />}
+      {state?.trip && <TripBanner view={view} state={state} />}
+      {state?.controls?.warned && <DeadManWarning controls={state.controls} personId={view.person.id} />}
+      {state && !state.trip && state.phase !== 'lost' && <ShutdownNote state={state} />}
+      {state?.warnings.map((warning) => (
+        <p key={warning} className="hatch border border-caution px-4 py-2 text-caution">
+          <span className="bg-ground px-1">Caution: {lowerFirst(warning)}</span>
+        </p>
+      ))}
+    </div>
+  )
+}
+
+function LinkBanner() {
+  const link = useLink()
+  if (link.kind === 'connected' || link.kind === 'connecting') return null
+  return (
+    <div role="alert" className="hatch border border-caution px-4 py-2.5">
+      <p className="w-fit bg-ground px-1 text-caution">
+        {link.kind === 'refused' ? (
+          <>
+            <b>No telemetry.</b> {link.reason} Nothing on this page is live; make safe still works through the
+            web application.
+          </>
+        ) : (
+          <>
+            <b>The link to the bridge is lost</b> <Since seconds={link.since} />.{' '}
+            {link.reason ? `${link.reason} ` : ''}The figures below are old: treat the bench as live. The
+            bridge keeps its limits and interlocks. Trying again; make safe still works.
+          </>
+        )}
+      </p>
+    </div>
+  )
+}
+
+/** Of this browser's clock, which is the one that lost the link. */
+function Since({ seconds }: { seconds: number }) {
+  // The tick alone is wanted: it renders this anew every second.
+  useBridgeSeconds()
+  return <>since {age(Date.now() / 1000 - seconds)}</>
+}
+
+function LostBanner({ state }: { state: BenchState }) {
+  const now = useBridgeSeconds()
+  const lost = Object.entries(state.ports).filter(([, port]) => port !== 'open')
+  return (
+    <div role="alert" className="hatch border border-caution px-4 py-2.5">
+      <p className="w-fit bg-ground px-1 text-caution">
+        <b>Voltage unknown: treat as live.</b> The line to the{' '}
+        {lost.map(([instrument]) => instrument).join(', ') || 'instruments'} is lost
+        {now === null ? '' : ` since ${age(now - state.since)}`}. The supply switches its outputs off by
+        itself when it hears nothing. Check the cable and the instrument; the bridge keeps trying.
+      </p>
+    </div>
+  )
+}
+
+function TripBanner({ view, state }: { view: BenchView; state: BenchState }) {
+  const now = useBridgeSeconds()
+  const command = useCommand(view.bench.id)
+  const { trip } = state
+  if (!trip) return null
+  const waits = resetWaitsFor(state, { mayReset: view.may.reset })
+  return (
+    <section
+      aria-label="Trip"
+      className="tripped flex flex-wrap items-center justify-between gap-x-6 gap-y-3 px-4 py-2.5"
+    >
+      <div className="min-w-0 flex-1 basis-80">
+        <p role="alert">
+          <b>Tripped: {lowerFirst(trip.happened)}</b> {trip.toDo}
+        </p>
+        <p>{shutdownSentence(state, now)}</p>
+        <AnswerOnTrip reply={command.reply} />
+      </div>
+      <command.Form method="post" action={command.action}>
+        <input type="hidden" name="kind" value="reset-trip" />
+        <button
+          type="submit"
+          aria-disabled={waits !== null || command.isBusy}
+          onClick={(event) => waits !== null && event.preventDefault()}
+          className="min-h-9 cursor-pointer rounded-sm border border-current px-3.5 py-1.5 font-medium aria-disabled:cursor-not-allowed aria-disabled:border-dashed"
+        >
+          {waits === null ? 'Reset' : `Reset: waits for ${waits}`}
+        </button>
+      </command.Form>
+    </section>
+  )
+}
+
+/** On the solid ground of the trip, the refusal cannot be in the trip's own colour. */
+function AnswerOnTrip({ reply }: { reply: ReturnType<typeof useCommand>['reply'] }) {
+  return (
+    <div className="[&_p]:text-inherit">
+      <AnswerLine reply={reply} />
+    </div>
+  )
+}
+
+/** For a while after a make safe: what was commanded and what has been measured since. */
+function ShutdownNote({ state }: { state: BenchState }) {
+  const now = useBridgeSeconds()
+  if (!state.shutdown || now === null || now - state.shutdown.at > 120) return null
+  if (state.anode.on || state.coils.on) return null
+  return (
+    <p className="border border-rule px-4 py-2">
+      <b className="font-medium">{state.shutdown.cause}</b> {shutdownSentence(state, now)}
+    </p>
+  )
+}

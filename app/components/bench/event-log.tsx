@@ -1,0 +1,57 @@
+import { href, Link } from 'react-router'
+import type { BenchView } from '#app/benches/bench-view.server.ts'
+import { useEvents } from '#app/telemetry/telemetry.tsx'
+
+const shown = 8
+
+type Line = { key: string; at: string; sentence: string; personName: string | null }
+
+/** What happened here last: the stored log, with what this page has heard since. */
+export function EventLog({ view }: { view: BenchView }) {
+  const events = useEvents(view.bench.id)
+  const heard = events.map<Line>((event) => ({
+    key: String(event.sequence),
+    at: new Date(event.at * 1000).toISOString(),
+    sentence: event.sentence,
+    personName: event.personName,
+  }))
+  const lines = mergeLog(
+    view.log.map<Line>((entry) => ({ ...entry, key: `${entry.at} ${entry.kind} ${entry.sentence}` })),
+    heard,
+  ).slice(0, shown)
+  return (
+    <section aria-labelledby="log" className="min-w-0">
+      <h2 id="log" className="mb-1 flex flex-wrap justify-between gap-3">
+        <span className="font-medium">Log</span>
+        <Link to={href('/benches/:benchId/log', { benchId: view.bench.id })} className="link text-ink-soft">
+          all of it
+        </Link>
+      </h2>
+      {lines.length === 0 && <p className="text-ink-soft">Nothing has happened on this bench yet.</p>}
+      <ol className="text-[12.5px]">
+        {lines.map((line) => (
+          <li key={line.key} className="flex gap-3 border-b border-rule py-1">
+            <time dateTime={line.at} className="text-ink-soft">
+              {line.at.slice(11, 19)}
+            </time>
+            <span className="min-w-0">
+              {line.sentence}
+              {line.personName && <span className="text-ink-soft"> {line.personName}</span>}
+            </span>
+          </li>
+        ))}
+      </ol>
+    </section>
+  )
+}
+
+/** Both lists as one, the newest first, with nothing twice: the same sentence in the same second is the same event. */
+export function mergeLog(stored: Line[], heard: Line[]): Line[] {
+  const seen = new Set<string>()
+  return [...heard, ...stored]
+    .filter(({ at, sentence }) => {
+      const identity = `${at.slice(0, 19)} ${sentence}`
+      return !seen.has(identity) && seen.add(identity)
+    })
+    .sort((a, b) => b.at.localeCompare(a.at))
+}

@@ -1,0 +1,142 @@
+import { useId, useState } from 'react'
+import { href, useFetcher } from 'react-router'
+import type { ActionReply } from '#app/benches/action-reply.ts'
+import type { BenchView, ReadingView } from '#app/benches/bench-view.server.ts'
+import { AnswerLine } from '../answer-line.tsx'
+import { fixed, withUncertainty } from '../figures.ts'
+import { edgesOf } from './logbook-rows.ts'
+import { StrikeReading } from './strike-reading.tsx'
+
+type Props = {
+  view: BenchView
+  reading: ReadingView
+  /** The newest reading not struck: its beam still stands, so its fields are open without asking. */
+  isCurrent: boolean
+}
+
+const centimetres = (metres: number) => fixed(metres * 100, 2)
+
+/** One reading: what was captured, the edges that this person read, what follows, and what others read. */
+export function LogbookRow({ view, reading, isCurrent }: Props) {
+  const id = useId()
+  const { benchId } = view.bench.config
+  const fetcher = useFetcher<ActionReply>()
+  const { mine, others, spreadMetres } = edgesOf(reading, view.person.id)
+  const [isAsked, setAsked] = useState(false)
+  const [left, setLeft] = useState('')
+  const [right, setRight] = useState('')
+  const [answered, setAnswered] = useState(fetcher.data)
+  if (fetcher.data !== answered) {
+    setAnswered(fetcher.data)
+    if (fetcher.data?.ok) setAsked(false)
+  }
+  const isEntry = !reading.struck && (isAsked || (isCurrent && !mine))
+  const errors = fetcher.data && !fetcher.data.ok ? fetcher.data.errors : {}
+  const label = reading.number
+
+  function readAgain() {
+    setLeft(mine ? centimetres(mine.leftMetres) : '')
+    setRight(mine ? centimetres(mine.rightMetres) : '')
+    setAsked(true)
+  }
+  const field = (name: 'left' | 'right', value: string, set: (text: string) => void) => (
+    <>
+      <input
+        form={id}
+        name={name}
+        aria-label={`Reading ${label}, ${name} edge in cm`}
+        inputMode="decimal"
+        autoComplete="off"
+        value={value}
+        onChange={(event) => set(event.target.value)}
+        aria-invalid={errors[name] ? true : undefined}
+        aria-describedby={errors[name] ? `${id}-${name}` : undefined}
+        className="min-h-8 w-20 border-ink px-2 text-right font-medium"
+      />
+      {errors[name] && (
+        <span
+          id={`${id}-${name}`}
+          role="alert"
+          className="block max-w-44 text-[12.5px] whitespace-normal text-trip"
+        >
+          {errors[name].join(' ')}
+        </span>
+      )}
+    </>
+  )
+  const diameter = reading.result?.diameterMetres ?? (mine ? mine.rightMetres - mine.leftMetres : null)
+  const cell = `px-3 py-1.5 ${reading.struck ? 'line-through' : ''}`
+  return (
+    <tr
+      className={`border-b border-rule text-right whitespace-nowrap ${reading.struck ? 'text-ink-soft' : ''}`}
+      data-reading={reading.number}
+    >
+      <th scope="row" className={`py-1.5 pr-3 text-left font-normal ${reading.struck ? 'line-through' : ''}`}>
+        {label}
+        {reading.polarity === -1 && <span className="text-ink-soft"> −B</span>}
+      </th>
+      <td className={cell}>{withUncertainty(reading.anodeVolts, reading.uAnodeVolts)}</td>
+      <td className={cell}>{withUncertainty(reading.coilAmps, reading.uCoilAmps)}</td>
+      <td className={cell}>
+        {isEntry ? field('left', left, setLeft) : mine && centimetres(mine.leftMetres)}
+      </td>
+      <td className={cell}>
+        {isEntry ? field('right', right, setRight) : mine && centimetres(mine.rightMetres)}
+      </td>
+      <td className={cell}>{diameter !== null && centimetres(diameter)}</td>
+      <td className={`${cell} ${reading.struck ? '' : 'text-beam'}`}>
+        {reading.result &&
+          withUncertainty(reading.result.chargeToMass / 1e11, reading.result.standardUncertainty / 1e11)}
+      </td>
+      <td className="px-3 py-1.5 text-left">
+        <div className="flex flex-wrap items-center gap-x-3 gap-y-1 text-ink-soft">
+          {isEntry && (
+            <fetcher.Form
+              id={id}
+              method="post"
+              action={href('/benches/:benchId/readings/:readingId/edges', { benchId, readingId: reading.id })}
+              className="flex items-center gap-3"
+            >
+              <button
+                type="submit"
+                disabled={fetcher.state !== 'idle'}
+                className="min-h-8 cursor-pointer rounded-sm border border-ink px-2.5 text-[13px] font-medium text-ink"
+              >
+                Enter edges
+              </button>
+              <span>{view.bench.config.tube.edges} edges, as read off the scale</span>
+            </fetcher.Form>
+          )}
+          {reading.struck && (
+            <span>
+              struck by {reading.struck.by}: {reading.struck.reason}
+            </span>
+          )}
+          {others.length > 0 && <Others others={others} spreadMetres={spreadMetres} />}
+          {!reading.struck && !isEntry && (
+            <button type="button" onClick={readAgain} className="link cursor-pointer">
+              {mine ? 'read again' : 'read the edges'}
+              <span className="sr-only"> of reading {label}</span>
+            </button>
+          )}
+          {!reading.struck && <StrikeReading benchId={benchId} readingId={reading.id} number={label} />}
+          <AnswerLine reply={fetcher.data?.ok ? undefined : fetcher.data} fields={['left', 'right']} />
+        </div>
+      </td>
+    </tr>
+  )
+}
+
+function Others({ others, spreadMetres }: { others: ReadingView['edges']; spreadMetres: number | null }) {
+  return (
+    <span>
+      {others
+        .map(
+          ({ name, leftMetres, rightMetres }) =>
+            `${name}: ${centimetres(leftMetres)} to ${centimetres(rightMetres)}`,
+        )
+        .join('; ')}
+      {spreadMetres !== null && `; diameters spread over ${fixed(spreadMetres * 1000, 1)} mm`}
+    </span>
+  )
+}

@@ -1,0 +1,48 @@
+import type { BenchView } from '#app/benches/bench-view.server.ts'
+import { LogbookRow } from './logbook-row.tsx'
+import { oldestFirst, readingToRead } from './logbook-rows.ts'
+
+const headings = ['anode V', 'coils A', 'left cm', 'right cm', 'd cm', 'e/m 10¹¹ C/kg']
+
+/** The readings of the run, growing downward like a page of a logbook. */
+export function Logbook({ view }: { view: BenchView }) {
+  const current = readingToRead(view.readings)
+  if (view.readings.length === 0)
+    return (
+      <p className="border-t border-ink py-3 text-ink-soft">
+        No readings in this run yet. When anode and coils are settled, capture takes the first one.
+      </p>
+    )
+  return (
+    <section aria-label="Readings" className="overflow-x-auto">
+      <table className="w-full border-collapse">
+        <caption className="sr-only">Readings of this run</caption>
+        <thead>
+          <tr className="border-b border-ink text-right whitespace-nowrap text-ink-soft">
+            <th scope="col" className="py-1.5 pr-3 text-left font-normal">
+              Reading
+            </th>
+            {headings.map((heading) => (
+              <th key={heading} scope="col" className="px-3 py-1.5 font-normal">
+                {heading}
+              </th>
+            ))}
+            <th scope="col" className="px-3 text-left font-normal">
+              <span className="sr-only">Remarks</span>
+            </th>
+          </tr>
+        </thead>
+        <tbody>
+          {oldestFirst(view.readings).map((reading) => (
+            <LogbookRow
+              key={reading.id}
+              view={view}
+              reading={reading}
+              isCurrent={reading.id === current?.id}
+            />
+          ))}
+        </tbody>
+      </table>
+    </section>
+  )
+}

@@ -1,0 +1,161 @@
+import { useId, useMemo, useState } from 'react'
+import type { BenchConfig } from '#app/protocol/bench-config.ts'
+import { useLink, usePicture } from '#app/telemetry/telemetry.tsx'
+import { type TubeGeometry, tubeGeometry } from './tube-geometry.ts'
+import { TubeScale, TubeScene } from './tube-scene.tsx'
+
+type Props = {
+  benchId: string
+  config: BenchConfig
+  /** Edges that this person entered last, metres along the scale. */
+  edges: number[]
+}
+
+type Sight = { x: number; y: number }
+
+/** The tube before its scale. A sight line and an enlargement help to read the edges; the reading stays the reader's. */
+export function Tube({ benchId, config, edges }: Props) {
+  const geometry = useMemo(() => tubeGeometry(config), [config])
+  const received = usePicture(benchId)
+  const isLive = useLink().kind === 'connected'
+  const picture = isLive && config.picturePath !== null ? received : null
+  const [sight, setSight] = useState<Sight | null>(null)
+  const blurId = useId()
+  const { box } = geometry
+  const isSeen = picture !== null && picture.points.length > 1
+  const marks = edges.map((metres) => geometry.scale.zero + metres * 1000)
+
+  return (
+    <figure className="grid gap-2">
+      <div className="rounded-md border border-rule bg-glass">
+        <svg
+          viewBox={`${box.left} ${box.top} ${box.width} ${box.height}`}
+          className="block w-full touch-pan-y"
+          role="img"
+          aria-label={tubeWords(config, isSeen)}
+          onPointerMove={(event) => setSight(toMillimetres(event, geometry))}
+          onPointerDown={(event) => setSight(toMillimetres(event, geometry))}
+        >
+          <defs>
+            <filter id={blurId} x="-50%" y="-50%" width="200%" height="200%">
+              <feGaussianBlur stdDeviation="2.2" />
+            </filter>
+          </defs>
+          <TubeScene geometry={geometry} picture={picture} blurId={blurId} />
+          <TubeScale geometry={geometry} edges={marks} />
+          {sight && (
+            <path
+              d={`M${sight.x} ${box.top}V${box.top + box.height}`}
+              className="stroke-ink-soft"
+              strokeWidth="0.25"
+              strokeDasharray="1.5 1.5"
+            />
+          )}
+        </svg>
+      </div>
+      <Enlargement geometry={geometry} picture={picture} edges={marks} sight={sight} setSight={setSight} />
+    </figure>
+  )
+}
+
+function toMillimetres(event: React.PointerEvent<SVGSVGElement>, { box }: TubeGeometry): Sight {
+  const drawn = event.currentTarget.getBoundingClientRect()
+  return {
+    x: box.left + ((event.clientX - drawn.left) / drawn.width) * box.width,
+    y: -(box.top + ((event.clientY - drawn.top) / drawn.height) * box.height),
+  }
+}
+
+function tubeWords(config: BenchConfig, isSeen: boolean): string {
+  const scale = `a scale of ${Math.round(config.scale.lengthMetres * 100)} cm, a mark each ${config.scale.graduationMetres * 1000} mm`
+  if (config.picturePath === null) return `The scale of this bench: ${scale}. The beam is in the tube itself.`
+  return `The tube with ${scale}. ${isSeen ? 'The beam is visible.' : 'No beam is visible.'}`
+}
+
+type EnlargementProps = {
+  geometry: TubeGeometry
+  picture: React.ComponentProps<typeof TubeScene>['picture']
+  edges: number[]
+  sight: Sight | null
+  setSight: (sight: Sight) => void
+}
+
+const halfWidth = 7
+
+/** Beam and scale on either side of the sight line, enlarged alike. Moved by pointer over the tube, or by its slider. */
+function Enlargement({ geometry, picture, edges, sight, setSight }: EnlargementProps) {
+  const id = useId()
+  const { scale } = geometry
+  const x = sight?.x ?? scale.zero + scale.length / 2
+  const y = sight?.y ?? geometry.gun.y
+  return (
+    <div className="grid gap-1">
+      <svg
+        viewBox="0 0 140 44"
+        className="block w-full rounded-md border border-rule bg-glass"
+        role="img"
+        aria-label="Enlargement at the sight line"
+      >
+        <svg
+          aria-hidden="true"
+          x="0"
+          y="0"
+          width="140"
+          height="22"
+          viewBox={`${x - halfWidth} ${-y - 1.1} ${2 * halfWidth} 2.2`}
+        >
+          <TubeScene geometry={geometry} picture={picture} blurId={null} />
+        </svg>
+        <svg
+          aria-hidden="true"
+          x="0"
+          y="22"
+          width="140"
+          height="22"
+          viewBox={`${x - halfWidth} ${-scale.y - 1} ${2 * halfWidth} 2.2`}
+        >
+          <EnlargedScale geometry={geometry} edges={edges} />
+        </svg>
+        <path d="M70 0V44" className="stroke-ink" strokeWidth="0.4" />
+      </svg>
+      <div className="flex items-center gap-3 text-[12.5px] text-ink-soft">
+        <label htmlFor={id}>sight line</label>
+        <input
+          id={id}
+          type="range"
+          min={geometry.box.left}
+          max={geometry.box.left + geometry.box.width}
+          step="0.1"
+          value={x}
+          onChange={(event) => setSight({ x: Number(event.target.value), y })}
+          aria-valuetext={`${((x - scale.zero) / 10).toFixed(1)} centimetres on the scale`}
+          className="min-w-0 flex-1"
+        />
+      </div>
+    </div>
+  )
+}
+
+/** The same marks in the same places, drawn to fit the low strip. */
+function EnlargedScale({ geometry, edges }: { geometry: TubeGeometry; edges: number[] }) {
+  const { y, zero, length, marks } = geometry.scale
+  return (
+    <g className="fill-ink-soft stroke-ink-soft" strokeWidth="0.06">
+      <path
+        d={`M${zero} ${-y - 0.9}h${length}${marks.map((mark) => `M${mark.x} ${-y - 0.9}v${mark.length / 5.5}`).join('')}`}
+        fill="none"
+      />
+      {marks.map(
+        (mark) =>
+          mark.label && (
+            <text key={mark.x} x={mark.x + 0.15} y={-y + 1.05} fontSize="0.9" stroke="none">
+              {mark.label}
+            </text>
+          ),
+      )}
+      {edges.map((edge) => (
+        <path key={edge} d={`M${edge} ${-y - 0.9}l-0.2 -0.3h0.4z`} className="fill-ink" stroke="none" />
+      ))}
+    </g>
+  )
+}
