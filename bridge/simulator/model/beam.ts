@@ -2,11 +2,12 @@ import { centreFieldTesla } from '#app/physics/coil-field.ts'
 import { traceOrbit, type Vector } from '#app/physics/orbit.ts'
 import type { BenchScenario } from '../scenario.ts'
 import { glowBrightness } from './tube.ts'
+import { traceWeakField } from './weak-field.ts'
 
 /** The path of the electrons of full energy, the outer edge of the glow. */
 export type Orbit = {
   points: Vector[]
-  /** Whether it came round to the gun; otherwise it ended at the glass. */
+  /** Whether it came round to the gun, where it ends; otherwise it ended at the glass. */
   isClosed: boolean
   /** Left-most and right-most x, between the points; null where the glass is in the way. */
   turningPoints: { leftMetres: number; rightMetres: number } | null
@@ -16,6 +17,10 @@ export type Picture = { points: [number, number][]; brightness: number; widthMil
 
 const leastVolts = 5
 const leastAmps = 1e-6
+/** The body of the gun reaches this far behind its opening; electrons that come round end there. */
+const gunBodyMetres = 0.008
+/** Weaker than this, the field bends the path so little that the tracing, whose step is a part of a turn, is too coarse. */
+const leastTurns = 0.25
 const leastBrightness = 0.02
 const mostPicturePoints = 200
 /** A picture is drawn anew once the orbit's size has changed by more than this part of it. */
@@ -68,7 +73,8 @@ export class Beam {
 
 function traceBench(scenario: BenchScenario, volts: number, amps: number): Orbit {
   const currentAmps = Math.abs(amps) < leastAmps ? leastAmps : amps
-  const points = traceOrbit({
+  const turns = tracedTurns(scenario, volts, currentAmps)
+  const path = {
     pair: scenario.coilPair,
     currentAmps,
     voltageVolts: volts,
@@ -76,20 +82,23 @@ function traceBench(scenario: BenchScenario, volts: number, amps: number): Orbit
     start: { x: scenario.gun.x, y: scenario.gun.y, z: 0 },
     direction: { ...scenario.gun.direction, z: 0 },
     strayFieldTesla: scenario.strayFieldTesla,
-    turns: tracedTurns(scenario, volts, currentAmps),
-  })
+  }
+  const points =
+    turns < leastTurns
+      ? traceWeakField({ ...path, lengthMetres: 2 * scenario.bulbRadiusMetres })
+      : traceOrbit({ ...path, turns })
   const atGlass = points.findIndex(({ x, y, z }) => Math.hypot(x, y, z) >= scenario.bulbRadiusMetres)
-  const round = afterOneTurn(points)
+  const round = atGun(points)
   if (atGlass !== -1 && (round === -1 || atGlass < round)) {
     return { points: points.slice(0, atGlass + 1), isClosed: false, turningPoints: null }
   }
-  const path = round === -1 ? points : points.slice(0, round)
+  const orbit = round === -1 ? points : points.slice(0, round)
   return {
-    points: path,
+    points: orbit,
     isClosed: round !== -1,
     turningPoints: {
-      leftMetres: -highest(path, ({ x }) => -x),
-      rightMetres: highest(path, ({ x }) => x),
+      leftMetres: -highest(orbit, ({ x }) => -x),
+      rightMetres: highest(orbit, ({ x }) => x),
     },
   }
 }
@@ -104,8 +113,9 @@ function tracedTurns(scenario: BenchScenario, volts: number, amps: number): numb
   return Math.min(oneTurn, acrossBulb)
 }
 
-/** Index of the point where the direction has turned by 360°; -1 when it has not. */
-function afterOneTurn(points: Vector[]): number {
+/** Index of the point where the path has come round to the gun or past it, turned by 360°; -1 when it has not. */
+function atGun(points: Vector[]): number {
+  const gun = points[0] as Vector
   let turned = 0
   for (let index = 2; index < points.length; index++) {
     const before = points[index - 2] as Vector
@@ -116,7 +126,8 @@ function afterOneTurn(points: Vector[]): number {
     const bx = after.x - here.x
     const by = after.y - here.y
     turned += Math.atan2(ax * by - ay * bx, ax * bx + ay * by)
-    if (Math.abs(turned) >= 2 * Math.PI) return index
+    const isBack = Math.hypot(after.x - gun.x, after.y - gun.y) < gunBodyMetres
+    if (Math.abs(turned) >= (isBack ? 1.5 : 2) * Math.PI) return index
   }
   return -1
 }

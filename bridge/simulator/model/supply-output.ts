@@ -44,9 +44,8 @@ export class SupplyOutput {
 
   /** Off, the regulated quantity at zero, the other one and the protection at their most. */
   reset(): void {
-    const regulatesAmps = this.name === 'coils'
-    this.volts = regulatesAmps ? this.scenario.voltsRange : 0
-    this.amps = regulatesAmps ? 0 : this.scenario.ampsRange
+    this.volts = this.#regulatesAmps ? this.scenario.voltsRange : 0
+    this.amps = this.#regulatesAmps ? 0 : this.scenario.ampsRange
     this.overVolts = this.mostOverVolts
     this.overAmps = this.mostOverAmps
     this.isOn = false
@@ -64,11 +63,20 @@ export class SupplyOutput {
 
   /** Voltage that is regulated to, drift included. */
   get targetVolts(): number {
-    return this.isOn ? this.#drifting(this.setVolts.produced(this.volts), this.volts) : 0
+    if (!this.isOn) return 0
+    const volts = this.setVolts.produced(this.volts)
+    return this.#regulatesAmps ? volts : this.#drifting(volts, this.volts)
   }
 
   get targetAmps(): number {
-    return this.isOn ? this.#drifting(this.setAmps.produced(this.amps), this.amps) : 0
+    if (!this.isOn) return 0
+    const amps = this.setAmps.produced(this.amps)
+    return this.#regulatesAmps ? this.#drifting(amps, this.amps) : amps
+  }
+
+  /** Coils are driven with a current, heater and anode with a voltage; the drift is that of this quantity. */
+  get #regulatesAmps(): boolean {
+    return this.name === 'coils'
   }
 
   clearTrip(): void {
