@@ -1,0 +1,50 @@
+import { useEffect, useRef } from 'react'
+import { href, useFetcher } from 'react-router'
+import type { ActionReply } from '#app/benches/action-reply.ts'
+import type { BenchState } from '#app/protocol/messages.ts'
+import { useLink } from '#app/telemetry/telemetry.tsx'
+import { AnswerLine } from '../answer-line.tsx'
+import { captureWaitsFor } from './capture-words.ts'
+
+/** Takes the settled window as a reading: by its button, or by Ctrl+Enter from anywhere on the page. */
+export function CaptureButton({ benchId, state }: { benchId: string; state: BenchState | null }) {
+  const fetcher = useFetcher<ActionReply>()
+  const form = useRef<HTMLFormElement>(null)
+  const waits = captureWaitsFor(state, useLink().kind === 'connected')
+  const isHeld = waits !== null || fetcher.state !== 'idle'
+
+  useEffect(() => {
+    const onKey = (event: KeyboardEvent) => {
+      if (event.key !== 'Enter' || !event.ctrlKey || event.repeat) return
+      event.preventDefault()
+      form.current?.requestSubmit()
+    }
+    window.addEventListener('keydown', onKey, { capture: true })
+    return () => window.removeEventListener('keydown', onKey, { capture: true })
+  }, [])
+
+  return (
+    <div className="grid max-w-72 gap-1 justify-self-end text-right max-md:justify-self-start max-md:text-left">
+      <fetcher.Form
+        ref={form}
+        method="post"
+        action={href('/benches/:benchId/readings', { benchId })}
+        onSubmit={(event) => isHeld && event.preventDefault()}
+      >
+        <button
+          type="submit"
+          className="button button-main"
+          aria-disabled={isHeld}
+          aria-keyshortcuts="Control+Enter"
+          aria-describedby="capture-waits"
+        >
+          Capture <span aria-hidden="true">Ctrl Enter</span>
+        </button>
+      </fetcher.Form>
+      <p id="capture-waits" className="text-[12.5px] text-ink-soft">
+        {waits}
+      </p>
+      <AnswerLine reply={fetcher.data} className="text-[12.5px]" />
+    </div>
+  )
+}

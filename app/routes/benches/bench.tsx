@@ -1,0 +1,46 @@
+import { href, Link, useRouteLoaderData } from 'react-router'
+import { loadBenchView } from '../../benches/bench-view.server.ts'
+import { BenchPage } from '../../components/bench/bench-page.tsx'
+import { MakeSafeButton } from '../../components/make-safe-button.tsx'
+import { PageFrame } from '../../components/page-frame.tsx'
+import { databaseContext, personContext } from '../../context.ts'
+import type { loader as rootLoader } from '../../root.tsx'
+import { Telemetry, useBenchState } from '../../telemetry/telemetry.tsx'
+import type { Route } from './+types/bench'
+
+export async function loader({ params, context }: Route.LoaderArgs) {
+  const person = context.get(personContext)
+  return loadBenchView(context.get(databaseContext), { benchId: params.benchId, person })
+}
+
+export default function Bench({ loaderData: view }: Route.ComponentProps) {
+  const socketUrl = useRouteLoaderData<typeof rootLoader>('root')?.socketUrl
+  if (!socketUrl) return null
+  return (
+    <Telemetry key={view.bench.id} socketUrl={socketUrl} benchId={view.bench.id}>
+      <title>{`${view.bench.name} · Coilside`}</title>
+      <Framed view={view} />
+    </Telemetry>
+  )
+}
+
+function Framed({ view }: { view: Route.ComponentProps['loaderData'] }) {
+  const isAtControls = useBenchState(view.bench.id)?.controls?.personId === view.person.id
+  return (
+    <PageFrame
+      where={
+        <h1 className="flex flex-wrap items-baseline gap-x-2">
+          <Link to={href('/hall')} className="text-ink-soft">
+            Hall /
+          </Link>
+          <b className="font-medium">{view.bench.name}</b>
+          <span className="text-ink-soft">{view.bench.place}</span>
+        </h1>
+      }
+      standing={isAtControls ? 'at the controls' : undefined}
+      makeSafe={<MakeSafeButton benchId={view.bench.id} person={view.person} />}
+    >
+      <BenchPage view={view} isAtControls={isAtControls} />
+    </PageFrame>
+  )
+}
