@@ -166,6 +166,13 @@ export const channelSummaries = sqliteTable(
   ],
 )
 
+/** Up to which number everything that a bridge has sent is here. */
+export const spoolMarks = sqliteTable('spool_marks', {
+  bridgeId: text().primaryKey(),
+  confirmedEvent: integer().notNull(),
+  confirmedSummary: integer().notNull(),
+})
+
 /** A series of readings on one bench: the logbook's page. */
 export const runs = sqliteTable(
   'runs',

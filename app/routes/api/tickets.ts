@@ -1,0 +1,20 @@
+import { may } from '../../auth/capabilities.ts'
+import { listVisibleBenches, requireVisibleBench } from '../../benches/visible-benches.server.ts'
+import { makeTicket } from '../../bridge-link/ticket.server.ts'
+import { databaseContext, personContext } from '../../context.ts'
+import { environment } from '../../env.server.ts'
+import type { Route } from './+types/tickets'
+
+/** A ticket for the bench whose page asks, or for every bench that this person may watch. */
+export async function action({ request, context }: Route.ActionArgs) {
+  const db = context.get(databaseContext)
+  const person = context.get(personContext)
+  const benchId = (await request.formData()).get('benchId')
+  let benchIds: string[] | null = null
+  if (typeof benchId === 'string' && benchId !== '')
+    benchIds = [(await requireVisibleBench(db, { benchId, person })).id]
+  else if (!may(person.role, 'watch-all-benches'))
+    benchIds = (await listVisibleBenches(db, person)).map(({ id }) => id)
+  const ticket = makeTicket({ person, benchIds, secret: environment().BRIDGE_SECRET })
+  return Response.json({ ticket }, { headers: { 'Cache-Control': 'no-store' } })
+}

@@ -1,0 +1,16 @@
+import { data, href, redirect } from 'react-router'
+import { commandBench } from '../../benches/command.server.ts'
+import { databaseContext, personContext } from '../../context.ts'
+import type { Route } from './+types/commands'
+
+export const loader = ({ params }: Route.LoaderArgs) =>
+  redirect(href('/benches/:benchId', { benchId: params.benchId }))
+
+export async function action({ request, params, context }: Route.ActionArgs) {
+  const { status, reply } = await commandBench(context.get(databaseContext), {
+    benchId: params.benchId,
+    person: context.get(personContext),
+    form: await request.formData(),
+  })
+  return data(reply, { status })
+}

@@ -1,0 +1,52 @@
+import { and, desc, eq, isNull } from 'drizzle-orm'
+import { type Database, write } from '../db/client.server.ts'
+import { people, runs } from '../db/schema.ts'
+
+export type Run = { id: string; startedAt: Date; by: string }
+type Transaction = Parameters<Parameters<typeof write>[1]>[0]
+
+/** The open run of a bench, or null. */
+export async function findOpenRun(db: Database | Transaction, benchId: string): Promise<Run | null> {
+  const [run] = await db
+    .select({ id: runs.id, startedAt: runs.startedAt, by: people.name })
+    .from(runs)
+    .innerJoin(people, eq(people.id, runs.personId))
+    .where(and(eq(runs.benchId, benchId), isNull(runs.endedAt)))
+    .orderBy(desc(runs.startedAt))
+    .limit(1)
+  return run ?? null
+}
+
+async function begin(
+  tx: Transaction,
+  { benchId, personId, now }: { benchId: string; personId: string; now: Date },
+) {
+  await tx
+    .update(runs)
+    .set({ endedAt: now })
+    .where(and(eq(runs.benchId, benchId), isNull(runs.endedAt)))
+  const [run] = await tx.insert(runs).values({ benchId, personId, startedAt: now }).returning({ id: runs.id })
+  if (!run) throw new Error('The run was not stored')
+  return run.id
+}
+
+/** Closes the open run of a bench, if there is one, and begins a new one. Its readings are numbered from 1. */
+export function startRun(
+  db: Database,
+  request: { benchId: string; personId: string; now?: Date },
+): Promise<string> {
+  return write(db, (tx) => begin(tx, { now: new Date(), ...request }))
+}
+
+/**
+ * The run that a reading of now belongs to: the open run of the bench when it was begun on this calendar day (of this
+ * machine's time zone), else a new one, with the older one closed. So a run never holds readings of two lab days.
+ */
+export async function runOfToday(
+  tx: Transaction,
+  { benchId, personId, now }: { benchId: string; personId: string; now: Date },
+): Promise<string> {
+  const open = await findOpenRun(tx, benchId)
+  if (open && open.startedAt.toDateString() === now.toDateString()) return open.id
+  return begin(tx, { benchId, personId, now })
+}
