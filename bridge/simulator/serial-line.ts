@@ -58,12 +58,12 @@ export class SerialLine {
     for (let end = this.#input.indexOf('\n'); end !== -1; end = this.#input.indexOf('\n')) {
       const message = this.#input.slice(0, end)
       this.#input = this.#input.slice(end + 1)
-      if (!this.#isOverrun) this.#handOver(message)
+      if (message.length > inputLimit) this.#overrun()
+      else if (!this.#isOverrun) this.#handOver(message)
       this.#isOverrun = false
     }
     if (this.#input.length > inputLimit) {
-      if (!this.#isOverrun) this.#device().status.report(-363)
-      this.#isOverrun = true
+      this.#overrun()
       this.#input = ''
     }
   }
@@ -74,6 +74,12 @@ export class SerialLine {
     this.#timers.clear()
     this.#cable?.unplug()
     this.#cable = null
+  }
+
+  /** A message too long for the input buffer is lost up to its end, and reported once. */
+  #overrun(): void {
+    if (!this.#isOverrun) this.#device().status.report(-363)
+    this.#isOverrun = true
   }
 
   #handOver(message: string): void {

@@ -70,7 +70,11 @@ function measureCommand(
 ): Command {
   return command(header, nothing, () => {
     const peak = source.isOn ? source.scenario.ripple : 0
-    return meter.text(ripple(peak, meter.scenario.settlingSeconds, bench.seconds), overload, isFrozen())
+    return meter.text(
+      ripple(peak, meter.scenario.settlingSeconds, bench.elapsedSeconds),
+      overload,
+      isFrozen(),
+    )
   })
 }
 

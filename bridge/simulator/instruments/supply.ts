@@ -244,13 +244,16 @@ function voltsSeen(bench: BenchModel, output: SupplyOutput): number {
   const isHeater = output.name === 'heater'
   const volts = isHeater ? bench.heaterVolts : bench.anodeVolts
   if (!isHeater && bench.faults.has('read-back')) return output.isOn ? output.volts : volts
-  return volts + (output.isOn ? ripple(output.scenario.ripple, readBackFilterSeconds, bench.seconds) : 0)
+  return (
+    volts + (output.isOn ? ripple(output.scenario.ripple, readBackFilterSeconds, bench.elapsedSeconds) : 0)
+  )
 }
 
 function ampsSeen(bench: BenchModel, output: SupplyOutput): number {
   if (output.name === 'heater') return bench.heaterAmps
   if (output.name === 'anode') return bench.anodeAmps
   return (
-    bench.coilAmps + (output.isOn ? ripple(output.scenario.ripple, readBackFilterSeconds, bench.seconds) : 0)
+    bench.coilAmps +
+    (output.isOn ? ripple(output.scenario.ripple, readBackFilterSeconds, bench.elapsedSeconds) : 0)
   )
 }

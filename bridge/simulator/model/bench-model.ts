@@ -50,7 +50,12 @@ export class BenchModel {
   }
 
   get seconds(): number {
-    return this.#startSeconds + this.#steps * stepSeconds
+    return this.#startSeconds + this.elapsedSeconds
+  }
+
+  /** Time since the bench was switched on. */
+  get elapsedSeconds(): number {
+    return this.#steps * stepSeconds
   }
 
   get isEStopIn(): boolean {
