@@ -6,6 +6,7 @@ import {
   standardUncertaintyFromResolution,
 } from '../metrology/instrument-accuracy.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
+import { workOut } from './reading-result.server.ts'
 
 export type ReadingView = {
   id: string
@@ -79,7 +80,7 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       anodeStandardErrorVolts: reading.uAnodeVolts,
       coilStandardErrorAmps: reading.uCoilAmps,
       edges: newest,
-      result: null,
+      result: workOut(reading, { config, edges: newest }),
       struck: strikeOf.get(reading.id) ?? null,
     }
   })
