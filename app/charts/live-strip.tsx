@@ -43,7 +43,7 @@ export function LiveStrip({ benchId, channel, spanSeconds, windowSeconds, leastR
       {
         width: element.clientWidth,
         height,
-        padding: [4, 2, 0, 0],
+        padding: [4, 16, 0, 0],
         legend: { show: false },
         cursor: { show: false },
         scales: {
@@ -54,6 +54,7 @@ export function LiveStrip({ benchId, channel, spanSeconds, windowSeconds, leastR
           {
             ...axis,
             size: 18,
+            space: 90,
             grid: { show: false },
             values: (_, ticks) => ticks.map((t) => (t ? `${-t} s` : 'now')),
           },

@@ -1,29 +1,17 @@
+import { formatConcise, formatFixed } from '#app/metrology/format.ts'
+
 /** Stands between a value and its unit. */
 export const thinSpace = '\u2009'
-const minus = '\u2212'
 
-/** A number with a fixed count of decimals and a true minus sign; a dash where there is none. */
+/** A number with a fixed count of decimals; a dash where there is none. */
 export function fixed(value: number | null | undefined, decimals: number): string {
   if (value === null || value === undefined || !Number.isFinite(value)) return '—'
-  const text = Math.abs(value).toFixed(decimals)
-  return value < 0 && Number(text) !== 0 ? minus + text : text
+  return formatFixed(value, decimals)
 }
 
-/** How many decimals show a standard uncertainty with two digits, at least `least`. */
-export function decimalsFor(standardUncertainty: number, least = 0): number {
-  if (!(standardUncertainty > 0) || !Number.isFinite(standardUncertainty)) return least
-  const decimals = 1 - Math.floor(Math.log10(standardUncertainty))
-  // 0.0996 rounds up to 0.100, which already has its two digits one place earlier.
-  const isRoundedUp = Math.round(standardUncertainty * 10 ** decimals) >= 100
-  return Math.max(least, Math.min(12, isRoundedUp ? decimals - 1 : decimals))
-}
-
-/** 200.412(61): the value with its standard uncertainty, two digits of it, in the last places of the value. */
+/** 200.412(61): the value with its standard uncertainty; the value alone where the uncertainty is not known. */
 export function withUncertainty(value: number, standardUncertainty: number): string {
-  if (!(standardUncertainty > 0)) return fixed(value, 3)
-  const decimals = decimalsFor(standardUncertainty)
-  const digits = (standardUncertainty * 10 ** decimals).toFixed(0)
-  return `${fixed(value, decimals)}(${digits})`
+  return standardUncertainty > 0 ? formatConcise(value, standardUncertainty) : fixed(value, 3)
 }
 
 /** '3 s', '2 min', '1 h 5 min': how long ago. */

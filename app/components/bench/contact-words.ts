@@ -1,5 +1,6 @@
 import type { BenchState } from '#app/protocol/messages.ts'
 import type { ContactName } from '#app/safety/types.ts'
+import { lowerFirst } from './shutdown-words.ts'
 
 type Contact = BenchState['contacts'][number]
 
@@ -33,5 +34,6 @@ export function whatStops(state: BenchState): string {
     return state.contacts.length
       ? 'Nothing stops the anode: every contact is closed.'
       : 'The bridge has not reported the interlock chain yet.'
-  return `What stops the anode: ${open.reason ?? `${contactLabels[open.name]} is open, ${open.measured}.`}`
+  const reason = open.reason ?? `${contactLabels[open.name]} is open, ${open.measured}.`
+  return `What stops the anode: ${lowerFirst(reason)}`
 }

@@ -1,6 +1,52 @@
+import type { ReadingBench } from '#app/analysis/reading.ts'
 import type { BenchView } from '#app/benches/bench-view.server.ts'
+import { readingBench } from '#app/benches/reading-bench.ts'
+import { formatConcise, formatExpanded, formatFixed } from '#app/metrology/format.ts'
+import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
+import { liveReading, sharesSentence } from './live-reading.ts'
 
+const benches = new Map<string, ReadingBench>()
+
+/** One object a revision, since what is tabulated for a bench is kept with its object. */
+function benchOf(config: BenchConfig): ReadingBench {
+  const key = `${config.benchId}/${config.revision}`
+  const bench = benches.get(key) ?? readingBench(config)
+  benches.set(key, bench)
+  return bench
+}
+
+const exponent = 11
+
+/** e/m as it stands now, its standard uncertainty in parentheses, the expanded one below, and what gives how much of it. */
 export function LiveResult({ view, state }: { view: BenchView; state: BenchState | null }) {
-  return <p className="text-ink-soft">{view.readings.length === 0 && state ? 'e/m: no reading has edges yet.' : ''}</p>
+  const { config } = view.bench
+  const isVirtual = config.picturePath !== null
+  const live =
+    state &&
+    liveReading({ readings: view.readings, state, bench: benchOf(config), revision: config.revision })
+  if (!live) return <p className="text-ink-soft">e/m: waiting for the bridge.</p>
+  if (live.kind === 'none')
+    return (
+      <section aria-label="e/m">
+        <p className="text-ink-soft">e/m</p>
+        <p>{live.sentence}</p>
+      </section>
+    )
+  const { value, standardUncertainty, expandedUncertainty, coverageFactor, groups } = live.result
+  return (
+    <section aria-label="e/m" className="min-w-0">
+      <p className="text-ink-soft">e/m, with the edges of reading {live.number}</p>
+      {/* On a real bench in a dark room the tube alone may glow. */}
+      <p
+        className={`text-[clamp(22px,6.5vw,40px)] leading-tight font-bold tracking-tighter text-beam ${isVirtual ? '' : 'dark:text-ink'}`}
+      >
+        {formatConcise(value, standardUncertainty, { exponent })} × 10¹¹ C/kg
+      </p>
+      <p className="text-ink-soft">
+        ({formatExpanded(value, expandedUncertainty, { exponent })}) × 10¹¹ C/kg at 95 %, k ={' '}
+        {formatFixed(coverageFactor, 2)}. {sharesSentence(groups)}
+      </p>
+    </section>
+  )
 }

@@ -22,7 +22,7 @@ export function Stage({ title, aside, value, unit, decimals, hazard, gauge, chil
         <span>{title}</span>
         <span className="text-right">{aside}</span>
       </h2>
-      <p className={hazard ? 'hatch' : undefined}>
+      <p className="flex flex-wrap items-center gap-x-3">
         <Quantity
           value={value}
           unit={unit}
@@ -30,7 +30,11 @@ export function Stage({ title, aside, value, unit, decimals, hazard, gauge, chil
           className="text-[32px] leading-tight font-bold tracking-tight text-live"
           unitClassName="text-[16px] font-normal"
         />
-        {hazard && <span className="ml-2 text-[12.5px] font-medium text-caution">{hazard}</span>}
+        {hazard && (
+          <span className="hatch border border-caution px-1.5 text-[12.5px] font-medium text-caution">
+            {hazard}
+          </span>
+        )}
       </p>
       {children}
       {gauge && <Gauge {...gauge} />}

@@ -1,0 +1,72 @@
+import { orbitMoved, type ReadingBench, type ReadingResult, readingBudget } from '#app/analysis/reading.ts'
+import type { ReadingView } from '#app/benches/bench-view.server.ts'
+import type { BenchState } from '#app/protocol/messages.ts'
+import { readingWithEdges } from './logbook-rows.ts'
+
+export type LiveReading =
+  | { kind: 'none'; sentence: string }
+  | { kind: 'result'; number: number; result: ReadingResult }
+
+type Input = { readings: ReadingView[]; state: BenchState; bench: ReadingBench; revision: number }
+
+/**
+ * e/m from the voltage and current of now with the edges of the last reading that has any, as long as the orbit stands
+ * where it stood then. Otherwise what to do, in one sentence.
+ */
+export function liveReading({ readings, state, bench, revision }: Input): LiveReading {
+  const none = (sentence: string): LiveReading => ({ kind: 'none', sentence })
+  const reading = readingWithEdges(readings)
+  if (!reading) return none('Capture a reading and read its two edges; then it stands here.')
+  if (state.phase !== 'live') return none('No beam: the anode is off.')
+  const voltage = state.channels.anodeVolts
+  const current = state.channels.coilAmps
+  if (
+    typeof voltage?.mean !== 'number' ||
+    typeof current?.mean !== 'number' ||
+    voltage.mean <= 0 ||
+    current.mean === 0
+  )
+    return none('Waiting for the anode voltage and the coil current.')
+  const again = `Read the edges again: the orbit has moved since reading ${reading.number}.`
+  if (reading.revision !== revision || reading.polarity !== state.polarity || state.polarityChanging)
+    return none(again)
+
+  const now = { voltageVolts: voltage.mean, currentAmps: Math.abs(current.mean) * state.polarity }
+  const leftEdges = reading.edges.map(({ leftMetres }) => leftMetres)
+  const rightEdges = reading.edges.map(({ rightMetres }) => rightMetres)
+  try {
+    const result = readingBudget({
+      bench,
+      ...now,
+      // How many samples of a window are independent is told only at capture: here the scatter itself stands for it.
+      uVoltageVolts: voltage.standardDeviation ?? 0,
+      uCurrentAmps: current.standardDeviation ?? 0,
+      leftEdges,
+      rightEdges,
+    })
+    const hasMoved = orbitMoved({
+      before: {
+        voltageVolts: reading.anodeVolts,
+        currentAmps: Math.abs(reading.coilAmps) * reading.polarity,
+      },
+      now,
+      radiusMetres: result.diameterMetres / 2,
+      resolutionMetres: bench.scale.graduationMetres * bench.scale.readableFraction,
+    })
+    return hasMoved ? none(again) : { kind: 'result', number: reading.number, result }
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error
+    return none(`The edges of reading ${reading.number} give no orbit of this bench: read them again.`)
+  }
+}
+
+/** 'The edges give 72 % of it, the coil pair 25 %.' Shares are of the variance; small ones are left out. */
+export function sharesSentence(groups: readonly { name: string; share: number }[]): string {
+  const large = groups.filter(({ share }) => share >= 0.05).sort((a, b) => b.share - a.share)
+  const [first, ...rest] = large.map(({ name, share }) => ({ name, percent: `${Math.round(share * 100)} %` }))
+  if (!first) return ''
+  const verb = first.name === 'edges' ? 'give' : 'gives'
+  return `The ${first.name} ${verb} ${first.percent} of its variance${rest
+    .map(({ name, percent }) => `, the ${name} ${percent}`)
+    .join('')}.`
+}
