@@ -38,3 +38,13 @@ export function byAttention<T extends { name: string; state: BenchState | null }
       a.name.localeCompare(b.name, 'en', { numeric: true }),
   )
 }
+
+/** '8 benches, 4 live, 1 tripped, 1 lost': what a glance at the room has to tell. */
+export function roomWords(states: (BenchState | null)[]): string {
+  const count = (phase: BenchState['phase']) => states.filter((state) => state?.phase === phase).length
+  const parts = (['live', 'tripped', 'lost'] as const)
+    .map((phase) => [count(phase), phase] as const)
+    .filter(([number]) => number > 0)
+    .map(([number, phase]) => `${number} ${phase}`)
+  return [`${states.length} ${states.length === 1 ? 'bench' : 'benches'}`, ...parts].join(', ')
+}

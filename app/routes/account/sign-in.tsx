@@ -41,7 +41,7 @@ export default function SignIn({ loaderData, actionData }: Route.ComponentProps)
   }
 
   return (
-    <main className="mx-auto grid max-w-md gap-6 px-4 pt-16 pb-10">
+    <main className="mx-auto grid max-w-lg gap-6 px-4 pt-16 pb-10">
       <title>Sign in · Coilside</title>
       <header className="flex items-center justify-between">
         <h1 className="flex items-center gap-2 text-xl font-bold">
@@ -93,7 +93,8 @@ function DemoAccounts({ accounts, onChoose }: { accounts: Account[]; onChoose: (
               <span className="text-ink-soft">{account.does}</span>
               <br />
               <span className="text-[12.5px] text-ink-soft">
-                {account.email} · {account.password}
+                <span className="whitespace-nowrap">{account.email}</span> ·{' '}
+                <span className="whitespace-nowrap">{account.password}</span>
               </span>
             </span>
             <button

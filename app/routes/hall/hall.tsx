@@ -1,9 +1,10 @@
 import { useRouteLoaderData } from 'react-router'
 import { may } from '../../auth/capabilities.ts'
 import { listVisibleBenches } from '../../benches/visible-benches.server.ts'
+import { roomWords } from '../../components/hall/attention.ts'
 import { BenchTile, type TileBench } from '../../components/hall/bench-tile.tsx'
 import { HoldButton } from '../../components/hall/hold-button.tsx'
-import { useAttentionOrder } from '../../components/hall/use-attention-order.ts'
+import { useAttentionOrder, useStates } from '../../components/hall/use-states.ts'
 import { PageFrame } from '../../components/page-frame.tsx'
 import { databaseContext, personContext } from '../../context.ts'
 import type { loader as rootLoader } from '../../root.tsx'
@@ -42,10 +43,7 @@ export default function Hall({ loaderData }: Route.ComponentProps) {
       <PageFrame
         where={
           <h1>
-            <b className="font-medium">Hall</b>{' '}
-            <span className="text-ink-soft">
-              {loaderData.benches.length === 1 ? '1 bench' : `${loaderData.benches.length} benches`}
-            </span>
+            <b className="font-medium">Hall</b> <RoomWords benches={loaderData.benches} />
           </h1>
         }
         makeSafe={loaderData.mayMakeRoomSafe && <RoomMakeSafe />}
@@ -55,6 +53,11 @@ export default function Hall({ loaderData }: Route.ComponentProps) {
       </PageFrame>
     </Telemetry>
   )
+}
+
+function RoomWords({ benches }: { benches: TileBench[] }) {
+  const words = useStates(useTelemetryStore(), benches, roomWords, roomWords(benches.map(() => null)))
+  return <span className="text-ink-soft">{words}</span>
 }
 
 function RoomMakeSafe() {
