@@ -1,0 +1,219 @@
+import type { Contribution } from '#app/metrology/budget.ts'
+import { combineBudget } from '#app/metrology/budget.ts'
+import { chargeToMass } from '#app/physics/charge-to-mass.ts'
+import { speedOfLight } from '#app/physics/constants.ts'
+import {
+  requireDegreesOfFreedom,
+  requireFinite,
+  requireNotNegative,
+  requirePositive,
+} from '#app/statistics/domain.ts'
+import { moments } from '#app/statistics/moments.ts'
+import type { EvennessTable } from './evenness-table.ts'
+import { tabulateEvenness } from './evenness-table.ts'
+import type { BudgetGroup, Edge, Reading, ReadingBench, Row } from './reading-rows.ts'
+import { beamRow, budgetGroups, currentRows, edgeRows, pairRows, voltageRows } from './reading-rows.ts'
+
+export { type EvennessTable, tabulateEvenness } from './evenness-table.ts'
+export { type BudgetGroup, budgetGroups, type Reading, type ReadingBench } from './reading-rows.ts'
+
+export type ReadingResult = {
+  /** e/m in C/kg */
+  value: number
+  standardUncertainty: number
+  expandedUncertainty: number
+  coverageFactor: number
+  effectiveDegreesOfFreedom: number
+  /** part of the uncertainty that all readings of the bench share, and the rest */
+  commonUncertainty: number
+  independentUncertainty: number
+  contributions: Record<string, Contribution & { group: BudgetGroup; common: boolean }>
+  groups: { name: BudgetGroup; share: number }[]
+  diameterMetres: number
+  /** factor that e/m worked out from the centre field was multiplied with: 1/g² */
+  evenness: number
+  /** mean axial field along the orbit, and current through each coil */
+  fieldTesla: number
+  currentPerCoilAmps: number
+}
+
+const tables = new WeakMap<ReadingBench, Map<1 | -1, EvennessTable>>()
+
+/**
+ * e/m of one reading with its uncertainty budget: 2V/(B²r² − V²/c²) with B = k·I·g(r). The sensitivities
+ * are the partial derivatives, worked out by hand; evenness takes part in those to the edges, the radius
+ * and the separation of the coils.
+ *
+ * The resolution of each edge and of each meter stands in the budget always, the spread over several
+ * people's edges beside it with n − 1 degrees of freedom. Accuracy of the meters, geometry, parallax and
+ * beam are common to all readings of the bench.
+ *
+ * @param reading.bench is taken not to change: what is tabulated for it is kept with the object
+ * @param reading.evenness what `tabulateEvenness` gave for this bench and sense of the current
+ * @throws RangeError naming the argument, also for edges that no orbit of the bench can have
+ */
+export function readingBudget(
+  reading: Reading & { bench: ReadingBench; evenness?: EvennessTable },
+): ReadingResult {
+  const { bench, voltageVolts, currentAmps } = reading
+  requireReading(reading)
+  requireBench(bench)
+  const left = edge('leftEdges', reading.leftEdges)
+  const right = edge('rightEdges', reading.rightEdges)
+  const parallax = parallaxFactor(bench.scale)
+  const diameterMetres = (right.mean - left.mean) * parallax
+  if (!(diameterMetres > 0)) throw new RangeError('rightEdges must lie to the right of leftEdges')
+  const radius = diameterMetres / 2
+  const table = reading.evenness ?? tableOf(bench, currentAmps > 0 ? 1 : -1)
+  if (radius > table.largestRadiusMetres) {
+    throw new RangeError(
+      `rightEdges and leftEdges must belong to an orbit inside the coils, diameter up to ${2 * table.largestRadiusMetres} m, got ${diameterMetres} m`,
+    )
+  }
+  const volts = voltageVolts + (bench.anodeMeter.correctionVolts ?? 0)
+  requirePositive('voltageVolts', volts)
+  const perCoil = bench.coilConnection === 'parallel' ? 0.5 : 1
+  const amps = Math.abs(currentAmps) * perCoil
+  const g = table.g.value(radius)
+  const k = bench.fieldFactor?.teslaPerAmp ?? table.teslaPerAmp
+  const fieldTesla = k * amps * g
+  const value = chargeToMass({ voltageVolts: volts, fieldTesla, radiusMetres: radius })
+
+  const lightLimit = volts / speedOfLight.value
+  const squares = (fieldTesla * radius) ** 2
+  const stretch = squares / (squares - lightLimit ** 2)
+  const perVolt = (value / volts) * (2 * stretch - 1)
+  const perField = (-2 * value * stretch) / fieldTesla
+  const perRadius = (-2 * value * stretch * (1 + (radius * table.g.slope(radius)) / g)) / radius
+  const rows: Record<string, Row> = {
+    ...voltageRows(reading, perVolt),
+    ...currentRows(reading, perField * k * g * perCoil * Math.sign(currentAmps)),
+    ...edgeRows(bench.scale, left, right, (perRadius * parallax) / 2),
+    ...pairRows(bench, table, radius, perField * amps),
+    beamEdge: beamRow(bench, perRadius),
+  }
+  return {
+    ...summarise(value, rows),
+    diameterMetres,
+    evenness: 1 / g ** 2,
+    fieldTesla,
+    currentPerCoilAmps: amps,
+  }
+}
+
+/**
+ * Whether the orbit has moved since its edges were read: whether the radius predicted from the change of
+ * voltage and current, as √V/I, is off by more than the resolution.
+ *
+ * @throws RangeError naming the argument
+ */
+export function orbitMoved(change: {
+  before: { voltageVolts: number; currentAmps: number }
+  now: { voltageVolts: number; currentAmps: number }
+  radiusMetres: number
+  resolutionMetres: number
+}): boolean {
+  const { before, now, radiusMetres, resolutionMetres } = change
+  for (const [name, { voltageVolts, currentAmps }] of Object.entries({ before, now })) {
+    requirePositive(`${name}.voltageVolts`, voltageVolts)
+    requireCurrent(`${name}.currentAmps`, currentAmps)
+  }
+  requirePositive('radiusMetres', radiusMetres)
+  requireNotNegative('resolutionMetres', resolutionMetres)
+  const ratio = Math.sqrt(now.voltageVolts / before.voltageVolts) * (before.currentAmps / now.currentAmps)
+  // A current of the other sense bends the beam to the other side.
+  return ratio < 0 || Math.abs(ratio - 1) * radiusMetres > resolutionMetres
+}
+
+function requireReading(reading: Reading): void {
+  requirePositive('voltageVolts', reading.voltageVolts)
+  requireNotNegative('uVoltageVolts', reading.uVoltageVolts)
+  requireCurrent('currentAmps', reading.currentAmps)
+  requireNotNegative('uCurrentAmps', reading.uCurrentAmps)
+  for (const name of ['voltageDegreesOfFreedom', 'currentDegreesOfFreedom'] as const) {
+    const nu = reading[name]
+    if (nu !== undefined) requireDegreesOfFreedom(name, nu)
+  }
+}
+
+/** The coil pair and the gun are looked at when they are tabulated. */
+function requireBench({ scale, beam, anodeMeter, coilMeter, fieldFactor, ...bench }: ReadingBench): void {
+  requirePositive('scale.graduationMetres', scale.graduationMetres)
+  requirePositive('scale.readableFraction', scale.readableFraction)
+  requireNotNegative('scale.uDistanceBehindMetres', scale.uDistanceBehindMetres)
+  requireNotNegative('beam.halfWidthMetres', beam.halfWidthMetres)
+  requireNotNegative('anodeMeter.percentOfReading', anodeMeter.percentOfReading)
+  requireNotNegative('anodeMeter.digits', anodeMeter.digits)
+  requireNotNegative('anodeMeter.digitSizeVolts', anodeMeter.digitSizeVolts)
+  requireFinite('anodeMeter.correctionVolts', anodeMeter.correctionVolts ?? 0)
+  requireNotNegative('anodeMeter.uCorrectionVolts', anodeMeter.uCorrectionVolts ?? 0)
+  requireNotNegative('coilMeter.percentOfReading', coilMeter.percentOfReading)
+  requireNotNegative('coilMeter.digits', coilMeter.digits)
+  requireNotNegative('coilMeter.digitSizeAmps', coilMeter.digitSizeAmps)
+  requireNotNegative('uTurns', bench.uTurns ?? 0)
+  requireNotNegative('uRadiusMetres', bench.uRadiusMetres ?? 0)
+  requireNotNegative('uSeparationMetres', bench.uSeparationMetres ?? 0)
+  if (fieldFactor) {
+    requirePositive('fieldFactor.teslaPerAmp', fieldFactor.teslaPerAmp)
+    requireNotNegative('fieldFactor.standardUncertainty', fieldFactor.standardUncertainty)
+  }
+}
+
+function requireCurrent(name: string, amps: number): void {
+  requireFinite(name, amps)
+  if (amps === 0) throw new RangeError(`${name} must not be 0: without a field there is no orbit`)
+}
+
+function edge(name: string, readings: readonly number[]): Edge {
+  if (readings.length === 0) throw new RangeError(`${name} must not be empty`)
+  readings.forEach((reading, i) => {
+    requireFinite(`${name}[${i}]`, reading)
+  })
+  if (readings.length === 1) return { count: 1, mean: readings[0] as number, standardError: 0 }
+  const { count, mean, standardDeviation } = moments(readings)
+  return { count, mean, standardError: standardDeviation / Math.sqrt(count) }
+}
+
+/** A scale behind the beam is seen larger than the beam; a mirrored scale takes the parallax out. */
+function parallaxFactor({ kind, distanceBehindMetres, eyeDistanceMetres }: ReadingBench['scale']): number {
+  if (kind === 'mirror') return 1
+  requireNotNegative('scale.distanceBehindMetres', distanceBehindMetres)
+  if (!(eyeDistanceMetres > distanceBehindMetres && eyeDistanceMetres < Number.POSITIVE_INFINITY)) {
+    throw new RangeError(
+      `scale.eyeDistanceMetres must be finite and above scale.distanceBehindMetres, got ${eyeDistanceMetres}`,
+    )
+  }
+  return (eyeDistanceMetres - distanceBehindMetres) / eyeDistanceMetres
+}
+
+function tableOf(bench: ReadingBench, sense: 1 | -1): EvennessTable {
+  const known = tables.get(bench) ?? new Map<1 | -1, EvennessTable>()
+  tables.set(bench, known)
+  const table = known.get(sense) ?? tabulateEvenness(bench, sense)
+  known.set(sense, table)
+  return table
+}
+
+function summarise(value: number, rows: Record<string, Row>) {
+  const sensitivities: Record<string, number> = {}
+  for (const [name, row] of Object.entries(rows)) {
+    sensitivities[name] = row.sensitivity
+  }
+  const {
+    contributions,
+    isWelchSatterthwaiteValid: _,
+    ...budget
+  } = combineBudget({ value, inputs: rows, sensitivities })
+  const shares = Object.fromEntries(budgetGroups.map((name) => [name, 0])) as Record<BudgetGroup, number>
+  const grouped: ReadingResult['contributions'] = {}
+  for (const [name, { group, common = false }] of Object.entries(rows)) {
+    const contribution = contributions[name] as Contribution
+    shares[group] += contribution.share
+    grouped[name] = { ...contribution, group, common }
+  }
+  return {
+    ...budget,
+    contributions: grouped,
+    groups: budgetGroups.map((name) => ({ name, share: shares[name] })),
+  }
+}
