@@ -8,7 +8,7 @@ const maxLineBytes = 512
 const tokenSeconds = 0.5
 const synchroniseSeconds = 1
 // After a line that is no answer the right one may still come; not for long, so that a damaged answer costs little.
-const quietShare = 0.4
+const quietSeconds = 0.05
 const flushSeconds = 0.05
 
 export type LineCounts = { retries: number; rubbishLines: number; synchronisations: number; losses: number }
@@ -147,7 +147,7 @@ export class Dialogue {
         rubbish = true
         this.#counts.rubbishLines++
         clearTimeout(quiet)
-        quiet = setTimeout(fail, seconds * 1000 * quietShare)
+        quiet = setTimeout(fail, quietSeconds * 1000)
       }
       this.#lines.endPartialLine()
       this.send(text)
