@@ -5,6 +5,8 @@ import type { TelemetryStore } from './store.ts'
 const presenceMilliseconds = 2000
 /** The bridge tells the state of its benches more often than this: longer silence is a dead line. */
 const silenceMilliseconds = 6000
+/** The bridge closes with this when the web application has revoked the person's keys. */
+const revokedCode = 4001
 
 type Options = {
   store: TelemetryStore
@@ -93,7 +95,12 @@ export function openConnection({ store, socketUrl, benchId }: Options): {
       socket.close()
     }
   })
-  socket.addEventListener('close', () => {
+  socket.addEventListener('close', (event) => {
+    if (event.code === revokedCode) {
+      isEnded = true
+      store.setLink({ kind: 'refused', reason: 'You have been signed out: sign in again.' })
+      socket.close()
+    }
     if (!isEnded) store.setLink({ kind: 'reconnecting', since: Date.now() / 1000, reason: null })
   })
 

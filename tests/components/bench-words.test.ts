@@ -97,13 +97,23 @@ describe('a setpoint', () => {
 })
 
 describe('capture', () => {
+  const me = { id: 'p1', role: 'student' } as const
+  const linked = { isLinked: true, person: me }
+
+  it('is for the person at the controls, and for staff', () => {
+    const asked = (person: { id: string; role: 'student' | 'instructor' }) =>
+      captureWaitsFor(liveState(), { isLinked: true, person })
+    expect(asked({ id: 'p2', role: 'student' })).toContain('for the person at the controls')
+    expect(asked({ id: 'p2', role: 'instructor' })).toBeNull()
+  })
+
   it('waits for the link, the anode and the channels in turn', () => {
-    expect(captureWaitsFor(liveState(), false)).toContain('link')
-    expect(captureWaitsFor(liveState({ phase: 'ready' }), true)).toContain('anode to be on')
-    expect(captureWaitsFor(liveState({ channels: {} }), true)).toBe(
+    expect(captureWaitsFor(liveState(), { isLinked: false, person: me })).toContain('link')
+    expect(captureWaitsFor(liveState({ phase: 'ready' }), linked)).toContain('anode to be on')
+    expect(captureWaitsFor(liveState({ channels: {} }), linked)).toBe(
       'Capture waits for the anode voltage: stale.',
     )
-    expect(captureWaitsFor(liveState(), true)).toBeNull()
+    expect(captureWaitsFor(liveState(), linked)).toBeNull()
   })
 })
 

@@ -54,7 +54,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
           <ChannelStrips config={config} state={state} />
           <div className="grid gap-4 pt-3 md:grid-cols-[minmax(0,1fr)_auto] md:items-end">
             <LiveResult view={view} state={state} />
-            <CaptureButton benchId={config.benchId} state={state} />
+            <CaptureButton view={view} state={state} />
           </div>
         </div>
       </div>

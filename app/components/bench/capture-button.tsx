@@ -1,16 +1,18 @@
 import { useEffect, useRef } from 'react'
 import { href, useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
+import type { BenchView } from '#app/benches/bench-view.server.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import { useLink } from '#app/telemetry/telemetry.tsx'
 import { AnswerLine } from '../answer-line.tsx'
 import { captureWaitsFor } from './capture-words.ts'
 
 /** Takes the settled window as a reading: by its button, or by Ctrl+Enter from anywhere on the page. */
-export function CaptureButton({ benchId, state }: { benchId: string; state: BenchState | null }) {
+export function CaptureButton({ view, state }: { view: BenchView; state: BenchState | null }) {
+  const benchId = view.bench.id
   const fetcher = useFetcher<ActionReply>()
   const form = useRef<HTMLFormElement>(null)
-  const waits = captureWaitsFor(state, useLink().kind === 'connected')
+  const waits = captureWaitsFor(state, { isLinked: useLink().kind === 'connected', person: view.person })
   const isHeld = waits !== null || fetcher.state !== 'idle'
 
   useEffect(() => {

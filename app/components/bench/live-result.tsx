@@ -18,6 +18,11 @@ function benchOf(config: BenchConfig): ReadingBench {
 
 const exponent = 11
 
+/** '± 0.042', in the same unit as the value above it. */
+function plusMinus(value: number, expandedUncertainty: number): string {
+  return `± ${formatExpanded(value, expandedUncertainty, { exponent }).split(' ± ')[1]}`
+}
+
 /** e/m as it stands now, its standard uncertainty in parentheses, the expanded one below, and what gives how much of it. */
 export function LiveResult({ view, state }: { view: BenchView; state: BenchState | null }) {
   const { config } = view.bench
@@ -44,8 +49,8 @@ export function LiveResult({ view, state }: { view: BenchView; state: BenchState
         {formatConcise(value, standardUncertainty, { exponent })} × 10¹¹ C/kg
       </p>
       <p className="text-ink-soft">
-        ({formatExpanded(value, expandedUncertainty, { exponent })}) × 10¹¹ C/kg at 95 %, k ={' '}
-        {formatFixed(coverageFactor, 2)}. {sharesSentence(groups)}
+        {plusMinus(value, expandedUncertainty)} at 95 %, k = {formatFixed(coverageFactor, 1)}.{' '}
+        {sharesSentence(groups)}
       </p>
     </section>
   )
