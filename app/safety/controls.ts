@@ -77,6 +77,7 @@ const unacknowledged = (person: { name: string }): string =>
 export type Presence = {
   /** When the dead-man acts unless something changes. */
   until: number
+  /** Whether it acts within `warningSeconds` for want of input. */
   warned: boolean
   lost: 'page' | 'input' | null
 }
@@ -98,7 +99,7 @@ export function presence(seen: {
   const until = Math.min(inputUntil, pageUntil)
   return {
     until,
-    warned: until - seen.now <= warningSeconds,
+    warned: inputUntil - seen.now <= warningSeconds,
     lost: seen.now < until ? null : pageUntil <= inputUntil ? 'page' : 'input',
   }
 }

@@ -22,9 +22,9 @@ export type Fault = { kind: FaultKind; happened: string; toDo: string; heaterOff
 export const confirmSeconds: Record<FaultKind, number> = {
   'e-stop': 0,
   enclosure: 0,
-  'over-voltage': 0.08,
-  'over-current': 0.08,
-  'anode-current': 0.08,
+  'over-voltage': 0,
+  'over-current': 0,
+  'anode-current': 0,
   'read-back': 1,
   'stale-channel': detectionSeconds['stale-channel'] - 0.3,
   heater: 1,
@@ -36,8 +36,8 @@ export const confirmSeconds: Record<FaultKind, number> = {
 const settleSeconds = 0.5
 /** How far a reading may trail its ramp. */
 const rampLagSeconds = 0.3
-/** Time for a heater to come into its band once it is switched on. */
-const heaterStartSeconds = 3
+/** Time for a cold heater, which draws all the current that its supply gives, to come into its band. */
+const heaterStartSeconds = 6
 /** Time for an output to fall once it is switched off, before a remaining value is a fault. */
 const fallenSeconds = 1
 
@@ -90,12 +90,13 @@ function eStop(view: BenchView): Fault | null {
   }
 }
 
-/** Latches with the anode on; with the anode off it only opens its contact. */
+/** Latches with anode or coils on, which its contact interrupts; otherwise it only opens its contact. */
 function enclosure(view: BenchView): Fault | null {
-  if (view.interlock?.enclosureClosed !== false || !view.outputs.anode.on) return null
+  const { anode, coils } = view.outputs
+  if (view.interlock?.enclosureClosed !== false || !(anode.on || coils.on)) return null
   return {
     kind: 'enclosure',
-    happened: 'The enclosure was opened with the anode on.',
+    happened: `The enclosure was opened with the ${anode.on ? 'anode' : 'coils'} on.`,
     toDo: 'Close the enclosure, then reset.',
     heaterOff: false,
   }

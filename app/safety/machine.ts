@@ -2,7 +2,7 @@ import { type Fault, type FaultKind, type FaultTimes, faultsNow, stepFaults } fr
 import type { BenchPhase, Trip, TripKind } from './types.ts'
 import { anyOutputOn, type BenchView, heaterInBand } from './view.ts'
 import { coldHeater, isWarm, stepWarmUp, type WarmUp } from './warm-up.ts'
-
+import { anodeKnowledge, inCelsius, inSeconds } from './words.ts'
 
 /** The state machine of one bench: what it remembers from one view to the next. */
 export type Machine = {

@@ -185,7 +185,15 @@ function heaterNow({ view }: Asked): Refusal[] {
       ]
 }
 
-const coilContacts: ContactName[] = ['commissioned', 'e-stop', 'coil-temperature', 'signal', 'no-trip']
+/** The enclosure's contact interrupts the coils as well as the anode. */
+const coilContacts: ContactName[] = [
+  'commissioned',
+  'e-stop',
+  'enclosure',
+  'coil-temperature',
+  'signal',
+  'no-trip',
+]
 
 function setCoils(asked: Asked, amps: number | null): Refusal[] {
   const { view, actor } = asked

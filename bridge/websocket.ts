@@ -1,0 +1,186 @@
+import { randomUUID } from 'node:crypto'
+import type { IncomingMessage } from 'node:http'
+import type { Duplex } from 'node:stream'
+import { type WebSocket, WebSocketServer } from 'ws'
+import type { Ticket } from '#app/protocol/commands.ts'
+import { fromBrowserSchema, parseMessage, protocolVersion } from '#app/protocol/messages.ts'
+import type { Bus } from './bus.ts'
+import type { Clock } from './clock.ts'
+import type { Log } from './log.ts'
+import type { Room } from './room.ts'
+import { history } from './sampler.ts'
+import { readTicket, resumeKeyFor } from './tickets.ts'
+import { mayWatch, send, type Watcher, Watchers } from './watchers.ts'
+
+export const telemetryPath = '/telemetry'
+const largestMessageBytes = 4096
+const pingSeconds = 1.5
+/** A socket that has not been heard for this long is lost. */
+const silentSeconds = 5
+const badMessageCode = 1008
+const revokedCode = 4001
+
+type TelemetryOptions = {
+  room: Room
+  bus: Bus
+  clock: Clock
+  wallOffsetSeconds: number
+  secret: string
+  allowedOrigins: readonly string[]
+  revokedAt: (personId: string) => number | null
+  log: Log
+}
+
+export type Telemetry = {
+  upgrade(request: IncomingMessage, socket: Duplex, head: Buffer): void
+  watchers: Watchers
+  /** Ends the connections of a person whose keys were revoked. */
+  dismiss(personId: string): void
+  close(): void
+}
+
+const wallNow = () => Date.now() / 1000
+
+/** The telemetry socket: what the bus tells goes out, presence and make safe come in, and nothing else. */
+export function createTelemetry(options: TelemetryOptions): Telemetry {
+  const { room, clock } = options
+  const server = new WebSocketServer({
+    noServer: true,
+    maxPayload: largestMessageBytes,
+    perMessageDeflate: false,
+    clientTracking: false,
+  })
+  const watchers = new Watchers()
+  const unsubscribe = options.bus.subscribe((message) => watchers.publish(message))
+
+  function upgrade(request: IncomingMessage, socket: Duplex, head: Buffer): void {
+    socket.on('error', () => socket.destroy())
+    if (!options.allowedOrigins.includes(request.headers.origin ?? '')) {
+      refuseUpgrade(socket, 403, 'Forbidden', 'This origin may not connect.')
+      return
+    }
+    const checked = ticketOf(new URL(request.url ?? '/', 'http://bridge'), options)
+    if (!checked.ok) {
+      refuseUpgrade(socket, 401, 'Unauthorized', checked.reason)
+      return
+    }
+    server.handleUpgrade(request, socket, head, (accepted) => welcome(accepted, checked.ticket))
+  }
+
+  function welcome(socket: WebSocket, ticket: Ticket): void {
+    const watcher: Watcher = {
+      socket,
+      ticket,
+      pageId: randomUUID(),
+      lastHeardAt: clock.now(),
+      benchId: null,
+      lostSamples: 0,
+    }
+    const benches = room.benches().filter(({ benchId }) => mayWatch(ticket, benchId))
+    send(watcher, {
+      type: 'hello',
+      version: protocolVersion,
+      wallOffsetSeconds: options.wallOffsetSeconds,
+      personId: ticket.personId,
+      pageId: watcher.pageId,
+      resumeKey: resumeKeyFor(options.secret, ticket, wallNow()),
+      benchIds: benches.map(({ benchId }) => benchId),
+    })
+    for (const bench of benches) {
+      send(watcher, { type: 'state', state: bench.state() })
+      const { apparatus } = bench
+      if (!apparatus) continue
+      for (const samples of history(apparatus.ring, bench.benchId, clock.now(), apparatus.hertz)) {
+        send(watcher, samples)
+      }
+    }
+    watchers.add(watcher)
+    socket.on('message', (data, isBinary) => hear(watcher, isBinary ? null : data.toString()))
+    socket.on('pong', () => {
+      watcher.lastHeardAt = clock.now()
+    })
+    socket.on('error', (error) => options.log.warn({ error: String(error) }, 'A telemetry socket failed'))
+    socket.on('close', () => forget(watcher, clock.now()))
+  }
+
+  function forget(watcher: Watcher, lastHeardAt: number): void {
+    watchers.remove(watcher)
+    for (const bench of room.benches()) bench.controls.pageGone(watcher.pageId, lastHeardAt)
+  }
+
+  function hear(watcher: Watcher, text: string | null): void {
+    watcher.lastHeardAt = clock.now()
+    const parsed =
+      text === null
+        ? { ok: false as const, reason: 'Only text is understood here.' }
+        : parseMessage(fromBrowserSchema, text)
+    if (!parsed.ok) {
+      send(watcher, { type: 'bye', reason: parsed.reason })
+      watcher.socket.close(badMessageCode)
+      return
+    }
+    const { message } = parsed
+    if (message.type === 'present') notePresence(watcher, message.benchId, message.input)
+    else void room.makeSafeFromPage(watcher.ticket, message.benchId)
+  }
+
+  function notePresence(watcher: Watcher, benchId: string, hadInput: boolean): void {
+    const bench = room.bench(benchId)
+    if (!bench || !mayWatch(watcher.ticket, benchId)) return
+    if (watcher.benchId !== benchId && watcher.benchId !== null) {
+      room.bench(watcher.benchId)?.controls.pageGone(watcher.pageId, clock.now())
+    }
+    watcher.benchId = benchId
+    bench.controls.pagePresent(watcher.pageId, watcher.ticket.personId, hadInput)
+  }
+
+  const timer = setInterval(() => {
+    for (const watcher of watchers) {
+      if (clock.now() - watcher.lastHeardAt > silentSeconds) {
+        forget(watcher, watcher.lastHeardAt)
+        watcher.socket.terminate()
+      } else if (watcher.socket.readyState === watcher.socket.OPEN) {
+        watcher.socket.ping()
+      }
+    }
+  }, pingSeconds * 1000)
+
+  return {
+    upgrade,
+    watchers,
+    dismiss(personId) {
+      for (const watcher of watchers) {
+        if (watcher.ticket.personId !== personId) continue
+        send(watcher, { type: 'bye', reason: 'You have been signed out: sign in again.' })
+        watcher.socket.close(revokedCode)
+      }
+    },
+    close() {
+      clearInterval(timer)
+      unsubscribe()
+      for (const watcher of watchers) {
+        send(watcher, { type: 'bye', reason: 'The bridge is being stopped.' })
+        watcher.socket.close(1001)
+        // A page that does not answer the closing handshake must not keep the bridge from ending.
+        setTimeout(() => watcher.socket.terminate(), 500).unref()
+      }
+      server.close()
+    },
+  }
+}
+
+function ticketOf(url: URL, { secret, revokedAt }: TelemetryOptions): ReturnType<typeof readTicket> {
+  if (url.pathname !== telemetryPath) return { ok: false, reason: 'There is nothing here.' }
+  for (const use of ['ticket', 'resume'] as const) {
+    const text = url.searchParams.get(use)
+    if (text !== null) return readTicket(text, { secret, use, now: wallNow(), revokedAt })
+  }
+  return { ok: false, reason: 'A ticket is needed to connect.' }
+}
+
+function refuseUpgrade(socket: Duplex, status: number, words: string, reason: string): void {
+  const body = `${JSON.stringify({ reason })}\n`
+  socket.end(
+    `HTTP/1.1 ${status} ${words}\r\nContent-Type: application/json\r\nContent-Length: ${Buffer.byteLength(body)}\r\nConnection: close\r\n\r\n${body}`,
+  )
+}
