@@ -1,0 +1,239 @@
+import { sql } from 'drizzle-orm'
+import { afterAll, beforeAll, beforeEach, describe, expect, it, vi } from 'vitest'
+import { startSession } from '#app/auth/sessions.server.ts'
+import { edges, readings, runs, strikes } from '#app/db/schema.ts'
+import routes from '#app/routes.ts'
+import { storeCapture } from '#app/runs/capture.server.ts'
+import { type AppHandler, startApp } from '#tests/support/app-handler.ts'
+import { offState } from '#tests/support/bench-state.ts'
+import { type ClassSite, openClassSite } from '#tests/support/class-site.ts'
+import { ownDatabaseUrl } from '#tests/support/database.ts'
+import { type StandInBridge, startStandInBridge } from '#tests/support/stand-in-bridge.ts'
+
+const origin = 'http://127.0.0.1:3000'
+const secret = 'a-secret-of-this-test-only'
+const who = ['nobody', 'outsider', 'student', 'instructor', 'technician'] as const
+type Who = (typeof who)[number]
+
+let app: AppHandler
+let bridge: StandInBridge
+let site: ClassSite
+let readingId: string
+
+beforeAll(async () => {
+  bridge = await startStandInBridge(secret)
+  vi.stubEnv('DATABASE_URL', ownDatabaseUrl())
+  vi.stubEnv('BRIDGE_SECRET', secret)
+  vi.stubEnv('BRIDGE_URL', bridge.url)
+  site = await openClassSite()
+  app = await startApp()
+}, 60_000)
+afterAll(async () => {
+  await app.close()
+  await bridge.close()
+})
+
+/** Each test finds one reading of bench 1, captured by the student's partner. */
+beforeEach(async () => {
+  for (const table of ['edges', 'strikes', 'reading_samples', 'readings', 'runs'])
+    await site.db.run(sql.raw(`delete from ${table}`))
+  const figures = { standardDeviation: 0, standardError: 0, effectiveCount: 4, count: 4 }
+  const capture = {
+    benchId: 'bench-1',
+    revision: 1,
+    at: 1_780_000_000,
+    windowSeconds: 5,
+    polarity: 1 as const,
+    times: [],
+    samples: {},
+    statistics: { anodeVolts: { ...figures, mean: 200 }, coilAmps: { ...figures, mean: 1.5 } },
+    states: {},
+  }
+  await storeCapture(site.db, { capture, personId: site.partner.id })
+  readingId = (await site.db.query.readings.findFirst())?.id ?? ''
+  bridge.asked.length = 0
+  bridge.answer = ({ path }) => {
+    if (path === '/make-safe') return { body: { benches: [] } }
+    if (path.endsWith('/captures')) return { body: { accepted: true, capture } }
+    return { body: { accepted: true, refusals: [], answer: 'Done.', state: offState('bench-1') } }
+  }
+})
+
+type Send = { path: string; method?: string; fields?: Record<string, string>; from?: string | null }
+
+async function send(person: Who, { path, method = 'GET', fields = {}, from = origin }: Send) {
+  const headers = new Headers()
+  if (person !== 'nobody') headers.set('Cookie', (await startSession(site[person].id)).split(';')[0] ?? '')
+  if (method !== 'GET' && from !== null) headers.set('Origin', from)
+  const body = method === 'GET' ? null : new URLSearchParams(fields)
+  return app.handle(new Request(origin + path.replace(':readingId', readingId), { method, headers, body }))
+}
+
+/** Rows that a refused request must not change. Sessions come with every request of a test. */
+const rows = async () => ({
+  commands: await site.db
+    .run(sql`select count(*) as n from bench_commands`)
+    .then(({ rows: [row] }) => row?.n),
+  acknowledged: await site.db
+    .run(sql`select count(*) as n from acknowledgements`)
+    .then(({ rows: [row] }) => row?.n),
+  runs: await site.db.$count(runs),
+  readings: await site.db.$count(readings),
+  edges: await site.db.$count(edges),
+  strikes: await site.db.$count(strikes),
+})
+
+type Row = [method: 'GET' | 'POST', route: string, statuses: number[], fields?: Record<string, string>]
+const bench = '/benches/:benchId'
+
+/** Every route with everyone: nobody signed in, a student of another class, a student, an instructor, a technician. */
+const table: Row[] = [
+  ['GET', '/sign-in', [200, 302, 302, 302, 302]],
+  ['POST', '/sign-in', [400, 302, 302, 302, 302]],
+  ['GET', '/sign-out', [302, 302, 302, 302, 302]],
+  ['POST', '/sign-out', [302, 302, 302, 302, 302]],
+  ['GET', '/room-light', [302, 302, 302, 302, 302]],
+  ['POST', '/room-light', [302, 302, 302, 302, 302], { roomLight: 'lit' }],
+  ['GET', '/', [302, 302, 302, 302, 302]],
+  ['GET', '/account', [302, 200, 200, 200, 200]],
+  ['POST', '/account', [401, 400, 400, 400, 400]],
+  ['GET', '/hall', [302, 200, 200, 200, 200]],
+  ['GET', '/make-safe', [302, 403, 403, 302, 302]],
+  ['POST', '/make-safe', [401, 403, 403, 200, 200]],
+  ['GET', bench, [302, 404, 200, 200, 200]],
+  ['GET', `${bench}/cautions`, [302, 404, 200, 200, 200]],
+  ['POST', `${bench}/cautions`, [401, 404, 302, 302, 302]],
+  ['GET', `${bench}/log`, [302, 404, 200, 200, 200]],
+  ['GET', `${bench}/commands`, [302, 302, 302, 302, 302]],
+  ['POST', `${bench}/commands`, [401, 404, 200, 200, 200], { kind: 'take-controls' }],
+  ['POST', `${bench}/commands`, [401, 404, 403, 200, 200], { kind: 'take-over' }],
+  ['POST', `${bench}/commands`, [401, 404, 200, 200, 200], { kind: 'make-safe' }],
+  ['POST', `${bench}/commands`, [401, 404, 200, 200, 200], { kind: 'reset-trip' }],
+  ['GET', `${bench}/runs`, [302, 302, 302, 302, 302]],
+  ['POST', `${bench}/runs`, [401, 404, 200, 200, 200]],
+  ['GET', `${bench}/readings`, [302, 302, 302, 302, 302]],
+  ['POST', `${bench}/readings`, [401, 404, 200, 200, 200]],
+  ['GET', `${bench}/readings/:readingId/edges`, [302, 302, 302, 302, 302]],
+  ['POST', `${bench}/readings/:readingId/edges`, [401, 404, 200, 200, 200], { left: '3', right: '11' }],
+  ['GET', `${bench}/readings/:readingId/strike`, [302, 302, 302, 302, 302]],
+  ['POST', `${bench}/readings/:readingId/strike`, [401, 404, 403, 200, 200], { reason: 'Read badly.' }],
+  ['POST', '/api/tickets', [401, 200, 200, 200, 200]],
+  ['POST', '/api/tickets', [401, 404, 200, 200, 200], { benchId: 'bench-1' }],
+  ['GET', '/api/health', [200, 200, 200, 200, 200]],
+  ['GET', '/api/bridge/configuration', [401, 401, 401, 401, 401]],
+  ['POST', '/api/bridge/spool', [401, 401, 401, 401, 401]],
+]
+
+const titleOf = ([method, route, , fields]: Row) => [method, route, fields?.kind ?? ''].join(' ').trim()
+const pathOf = (route: string) => route.replace(':benchId', 'bench-1')
+
+type Entry = { path?: string; index?: boolean; children?: Entry[] }
+const flatten = (entries: Entry[], above = ''): string[] =>
+  entries.flatMap(({ path, index, children }) => {
+    const here = path === undefined ? above : `${above}/${path}`
+    if (children) return flatten(children, here)
+    return path !== undefined || index ? [here || '/'] : []
+  })
+
+describe('The table of routes and roles', () => {
+  it('holds every route of the site map', async () => {
+    expect([...new Set(table.map(([, route]) => route))].sort()).toEqual(
+      flatten((await routes) as Entry[]).sort(),
+    )
+  })
+
+  it.each(table.map((row) => ({ name: titleOf(row), row })))(
+    'answers each of them as it should: $name',
+    async ({ row: [method, route, statuses, fields] }) => {
+      const found: number[] = []
+      for (const [index, person] of who.entries()) {
+        await site.db.delete(strikes)
+        const before = await rows()
+        bridge.asked.length = 0
+        const response = await send(person, { path: pathOf(route), method, fields })
+        await response.text()
+        found.push(response.status)
+        const isRefused = [401, 403, 404].includes(statuses[index] ?? 0)
+        if (!isRefused) continue
+        // A take-over refused for the role is noted in the log as such.
+        const isNoted = fields?.kind === 'take-over' && statuses[index] === 403
+        expect(await rows()).toEqual(isNoted ? { ...before, commands: Number(before.commands) + 1 } : before)
+        expect(bridge.asked).toEqual([])
+      }
+      expect(found).toEqual(statuses)
+    },
+  )
+
+  it('sends whoever is not signed in to the sign-in page, and back to where they were going', async () => {
+    const response = await send('nobody', { path: '/benches/bench-1/log?page=2' })
+    expect(response.headers.get('Location')).toBe(
+      `/sign-in?${new URLSearchParams({ returnTo: '/benches/bench-1/log?page=2' })}`,
+    )
+  })
+})
+
+describe('A request for the data of one route alone', () => {
+  it.each([
+    ['/benches/bench-1', 'routes/benches/bench'],
+    ['/benches/bench-1/log', 'routes/benches/log'],
+    ['/benches/bench-1/cautions', 'routes/benches/cautions'],
+    ['/hall', 'routes/hall/hall'],
+  ])('of %s passes the guards as well', async (path, id) => {
+    const data = `${path}.data?_routes=${encodeURIComponent(id)}`
+    const asNobody = await (await send('nobody', { path: data })).text()
+    expect(asNobody).toContain('SingleFetchRedirect')
+    const asOutsider = await (await send('outsider', { path: data })).text()
+    for (const text of [asNobody, asOutsider]) expect(text).not.toMatch(/bench-1"|door side|coilPair/)
+    expect(await (await send('student', { path: data })).text()).toContain('door side')
+  })
+})
+
+describe('A write from another origin', () => {
+  const writes = table
+    .filter(([method, route]) => method === 'POST' && !route.startsWith('/api/bridge/'))
+    .map((row) => ({ name: titleOf(row), row }))
+  const origins = ['https://elsewhere.test', 'http://127.0.0.1:4000', 'null', 'not an origin', null]
+
+  it.each(writes)(
+    'is refused with a technician’s session: $name',
+    async ({ row: [method, route, , fields] }) => {
+      // The framework's own check prints what it refuses.
+      const printed = vi.spyOn(console, 'error').mockImplementation(() => {})
+      const before = await rows()
+      for (const from of origins) {
+        const response = await send('technician', { path: pathOf(route), method, fields, from })
+        await response.text()
+        expect([400, 403], `${from}`).toContain(response.status)
+        expect(response.headers.get('Set-Cookie')).toBeNull()
+      }
+      printed.mockRestore()
+      expect(await rows()).toEqual(before)
+      expect(bridge.asked).toEqual([])
+    },
+  )
+})
+
+describe('A ticket', () => {
+  const ticketOf = async (person: Who, fields: Record<string, string> = {}) => {
+    const response = await send(person, { path: '/api/tickets', method: 'POST', fields })
+    const { ticket } = (await response.json()) as { ticket: string }
+    return JSON.parse(Buffer.from(ticket.split('.')[0] ?? '', 'base64url').toString())
+  }
+
+  it('names the benches of a student’s classes, and every bench for staff', async () => {
+    expect(await ticketOf('student')).toMatchObject({
+      use: 'ticket',
+      personId: site.student.id,
+      role: 'student',
+      benchIds: ['bench-1', 'bench-2', 'bench-3'],
+      room: false,
+    })
+    expect(await ticketOf('outsider')).toMatchObject({ benchIds: [], room: false })
+    expect(await ticketOf('technician')).toMatchObject({ benchIds: null, room: true })
+  })
+
+  it('of a bench’s page is for that bench alone', async () => {
+    expect(await ticketOf('student', { benchId: 'bench-2' })).toMatchObject({ benchIds: ['bench-2'] })
+    expect(await ticketOf('instructor', { benchId: 'bench-2' })).toMatchObject({ benchIds: ['bench-2'] })
+  })
+})
