@@ -4,7 +4,7 @@ import { type Capability, may } from '../auth/capabilities.ts'
 import { type BridgeAnswer, sendCommand, sendRoomMakeSafe } from '../bridge-link/bridge-client.server.ts'
 import type { Person } from '../context.ts'
 import type { Database } from '../db/client.server.ts'
-import { benchCommands } from '../db/schema.ts'
+import { benchCommands, benches } from '../db/schema.ts'
 import type { Command } from '../protocol/commands.ts'
 import { hasAcknowledged } from './acknowledgements.server.ts'
 import { type Answered, done, fieldErrors, ownCodes, refused } from './action-reply.ts'
@@ -79,9 +79,22 @@ export async function makeRoomSafe(db: Database, { person }: { person: Asker }):
   })
   const answer = await sendRoomMakeSafe({ actor: await resolveActor(db, person) })
   if (answer.kind !== 'answered') return noteSilence(answer, note)
-  const sentence = answer.reply.benches.map((bench) => bench.answer).join(' ') || 'The bridge has no bench.'
+  const nameOf = await benchNames(db)
+  const sentence =
+    answer.reply.benches.map((bench) => `${nameOf(bench.benchId)}: ${bench.answer}`).join(' ') ||
+    'The bridge has no bench.'
   await note('accepted', sentence)
   return { status: 200, reply: done(sentence) }
+}
+
+/** Names of the benches; their ids where the database cannot be read. */
+async function benchNames(db: Database): Promise<(benchId: string) => string> {
+  const rows = await db
+    .select({ id: benches.id, name: benches.name })
+    .from(benches)
+    .catch(() => [])
+  const names = new Map(rows.map(({ id, name }) => [id, name]))
+  return (benchId) => names.get(benchId) ?? benchId
 }
 
 /** The form as a command for the bridge. Null when the controls would go to someone who may not watch this bench. */

@@ -290,14 +290,14 @@ describe('Make safe', () => {
     bridge.answer = () => ({
       body: {
         benches: [
-          { benchId: 'bench-1', answer: 'Bench 1: off commanded, 0.4 V measured.' },
-          { benchId: 'bench-2', answer: 'Bench 2: heater not confirmed.' },
+          { benchId: 'bench-1', answer: 'Off commanded, 0.4 V measured.' },
+          { benchId: 'bench-2', answer: 'Heater not confirmed.' },
         ],
       },
     })
     const context = routeContext(site.db, site.instructor)
     const result = await outcome(makeRoomSafe(routeArgs(formRequest('/make-safe', {}), context, {})))
-    const answer = 'Bench 1: off commanded, 0.4 V measured. Bench 2: heater not confirmed.'
+    const answer = 'Bench 1: Off commanded, 0.4 V measured. Bench 2: Heater not confirmed.'
     expect(result).toEqual({ status: 200, body: { ok: true, answer } })
     expect(bridge.asked).toMatchObject([
       { path: '/make-safe', body: { actor: { personId: site.instructor.id, role: 'instructor' } } },
