@@ -6,7 +6,7 @@ if (!existsSync('build/server/index.js')) throw new Error('Run `npm run build` f
 
 const env = { NODE_ENV: 'production' }
 const bridge = startProcess('bridge', ['build/bridge/main.js'], { env, isLoud: true })
-const app = startProcess('app', ['node_modules/@react-router/serve/bin.cjs', 'build/server/index.js'], {
+const app = startProcess('app', ['node_modules/@react-router/serve/bin.js', 'build/server/index.js'], {
   env,
   isLoud: true,
 })

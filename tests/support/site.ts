@@ -82,7 +82,7 @@ export async function startSite({
     : {
         simulator: ['build/bridge/simulator/main.js'],
         bridge: ['build/bridge/main.js'],
-        app: ['node_modules/@react-router/serve/bin.cjs', 'build/server/index.js'],
+        app: ['node_modules/@react-router/serve/bin.js', 'build/server/index.js'],
       }
 
   const seed = startProcess('seed', ['--import', 'tsx', 'app/db/seed.server.ts'], {
