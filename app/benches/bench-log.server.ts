@@ -69,7 +69,7 @@ export async function findBenchLog(
 ): Promise<LogEntry[]> {
   const rows = await db.all<Row>(
     sql`${events(benchId, reader)} union all ${commands(benchId, reader)}
-      order by at desc, tie desc limit ${limit} offset ${offset}`,
+      order by at desc, tie desc, id desc limit ${limit} offset ${offset}`,
   )
   return rows.map(toEntry)
 }
@@ -81,7 +81,7 @@ export async function findNewestEvents(
 ): Promise<LogEntry[]> {
   const rows = await db.all<Row>(
     sql`${events(benchId, reader)} union all ${commands(benchId, reader)} and ${benchCommands.outcome} = 'unanswered'
-      order by at desc, tie desc limit ${limit}`,
+      order by at desc, tie desc, id desc limit ${limit}`,
   )
   return rows.map(toEntry)
 }
