@@ -20,7 +20,7 @@ type Props = {
   text: string
 }
 
-const height = 64
+const height = 72
 const minimumSeconds = 1 / 30
 
 /** One channel over time, drawn from the ring buffer outside React. */
@@ -38,12 +38,12 @@ export function LiveStrip({ benchId, channel, spanSeconds, windowSeconds, leastR
     if (!element) return
     const colours = plotColours(light)
     const font = "11px 'Roboto Mono', monospace"
-    const axis = { stroke: colours.soft, font, ticks: { show: false }, gap: 2 }
+    const axis = { stroke: colours.soft, font, ticks: { show: false }, gap: 4 }
     const plot = new uPlot(
       {
         width: element.clientWidth,
         height,
-        padding: [4, 16, 0, 0],
+        padding: [8, 16, 2, 0],
         legend: { show: false },
         cursor: { show: false },
         scales: {
@@ -53,7 +53,7 @@ export function LiveStrip({ benchId, channel, spanSeconds, windowSeconds, leastR
         axes: [
           {
             ...axis,
-            size: 18,
+            size: 20,
             space: 90,
             grid: { show: false },
             values: (_, ticks) => ticks.map((t) => (t ? `${-t} s` : 'now')),

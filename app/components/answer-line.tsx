@@ -1,3 +1,4 @@
+import { useEffect, useState } from 'react'
 import type { ActionReply } from '#app/benches/action-reply.ts'
 
 type Props = {
@@ -7,12 +8,15 @@ type Props = {
   className?: string
 }
 
+const answerMilliseconds = 10_000
+
 /** What the bench answered: done, or refused with the limit, whose it is and by how much. */
 export function AnswerLine({ reply, fields = [], className }: Props) {
+  const isFresh = useFreshness(reply)
   const problems = reply && !reply.ok ? problemsOf(reply, fields) : []
   return (
     <div className={className}>
-      <p role="status">{reply?.ok ? reply.answer : ''}</p>
+      <p role="status">{reply?.ok && isFresh ? reply.answer : ''}</p>
       <div role="alert">
         {problems.map((sentence) => (
           <p key={sentence} className="font-medium text-trip">
@@ -22,6 +26,17 @@ export function AnswerLine({ reply, fields = [], className }: Props) {
       </div>
     </div>
   )
+}
+
+/** Whether a reply has just come: what was done is said for a while, what was refused until it is asked anew. */
+function useFreshness(reply: ActionReply | undefined): boolean {
+  const [faded, setFaded] = useState<ActionReply | null>(null)
+  useEffect(() => {
+    if (!reply) return
+    const timer = setTimeout(() => setFaded(reply), answerMilliseconds)
+    return () => clearTimeout(timer)
+  }, [reply])
+  return faded !== reply
 }
 
 function problemsOf(reply: Extract<ActionReply, { ok: false }>, fields: string[]): string[] {

@@ -18,7 +18,8 @@ export function Banners({ view, state }: Props) {
       {state?.trip && <TripBanner view={view} state={state} />}
       {state?.controls?.warned && <DeadManWarning controls={state.controls} personId={view.person.id} />}
       {state && !state.trip && state.phase !== 'lost' && <ShutdownNote state={state} />}
-      {state?.warnings.map((warning) => (
+      {/* The lost line says all that its warnings say. */}
+      {(state?.phase === 'lost' ? [] : (state?.warnings ?? [])).map((warning) => (
         <p key={warning} className="hatch border border-caution px-4 py-2 text-caution">
           <span className="bg-ground px-1">Caution: {lowerFirst(warning)}</span>
         </p>

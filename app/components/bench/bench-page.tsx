@@ -1,5 +1,5 @@
 import type { BenchView } from '#app/benches/bench-view.server.ts'
-import { useBenchState, useMakeSafeReport } from '#app/telemetry/telemetry.tsx'
+import { useBenchState, useLink, useMakeSafeReport } from '#app/telemetry/telemetry.tsx'
 import { Banners } from './banners.tsx'
 import { nextStep } from './bring-up.ts'
 import { BringUpGuide } from './bring-up-guide.tsx'
@@ -30,7 +30,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
   const read = readingWithEdges(view.readings)
   const mine = read && edgesOf(read, view.person.id).mine
   return (
-    <div className="grid gap-4">
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-4">
       {state ? (
         <>
           <Controls view={view} state={state} />
@@ -44,7 +44,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
       <Banners view={view} state={state} />
       <MakeSafeAnswer />
       {step && <BringUpGuide step={step} benchId={config.benchId} />}
-      <div className="grid gap-x-6 gap-y-4 lg:grid-cols-[minmax(0,420px)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,560px)_minmax(0,1fr)]">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[minmax(0,420px)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,560px)_minmax(0,1fr)]">
         <Tube
           benchId={config.benchId}
           config={config}
@@ -58,11 +58,11 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
           </div>
         </div>
       </div>
-      <div className="grid gap-2">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-2">
         <RunHeader view={view} />
         <Logbook view={view} />
       </div>
-      <div className="grid gap-x-10 gap-y-6 pt-2 lg:grid-cols-2">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-10 gap-y-6 pt-2 lg:grid-cols-2">
         <EventLog view={view} />
         <CautionsGlance benchId={config.benchId} />
       </div>
@@ -70,10 +70,11 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
   )
 }
 
-/** The answer to a make safe of this page, to be seen as well as heard. */
+/** What became of a make safe of this page, until the bench's own state tells it. */
 function MakeSafeAnswer() {
   const report = useMakeSafeReport()
-  if (!report) return null
+  const isLinked = useLink().kind === 'connected'
+  if (!report || (report.state === 'answered' && isLinked)) return null
   return (
     <p className={report.state === 'failed' ? 'tripped px-4 py-2' : 'border border-rule px-4 py-2'}>
       {report.sentence}

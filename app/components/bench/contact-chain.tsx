@@ -11,7 +11,7 @@ export function ContactChain({ contacts }: { contacts: BenchState['contacts'] })
       {drawn.map((contact) => (
         <li
           key={contact.name}
-          className={`w-[66px] text-center text-[11.5px] leading-tight ${contact.closed ? 'text-ink-soft' : 'font-medium text-caution'}`}
+          className={`w-[72px] text-center text-[11.5px] leading-tight ${contact.closed ? 'text-ink-soft' : 'font-medium text-caution'}`}
         >
           <MakeContact isClosed={contact.closed} />
           <span className="block">{contactLabels[contact.name]}</span>
@@ -20,7 +20,7 @@ export function ContactChain({ contacts }: { contacts: BenchState['contacts'] })
         </li>
       ))}
       {contacts.length > 0 && (folded > 0 || isUnfolded) && (
-        <li className="w-[66px] text-center text-[11.5px] leading-tight text-ink-soft">
+        <li className="w-[72px] text-center text-[11.5px] leading-tight text-ink-soft">
           {folded > 0 && <MakeContact isClosed />}
           <button
             type="button"
@@ -40,18 +40,19 @@ export function ContactChain({ contacts }: { contacts: BenchState['contacts'] })
 function MakeContact({ isClosed }: { isClosed: boolean }) {
   return (
     <svg
-      viewBox="0 0 66 26"
+      viewBox="0 0 72 26"
       className="block h-[26px] w-full"
+      preserveAspectRatio="none"
       fill="none"
       stroke="currentColor"
       strokeWidth="2"
       strokeLinecap="round"
       aria-hidden="true"
     >
-      <path d="M0 18H20M46 18H66" />
-      <path d={isClosed ? 'M20 18L46 16' : 'M20 18L42 5'} />
-      <circle cx="20" cy="18" r="2.2" fill="currentColor" stroke="none" />
-      <circle cx="46" cy="18" r="2.2" fill="currentColor" stroke="none" />
+      <path d="M0 18H23M49 18H72" />
+      <path d={isClosed ? 'M23 18L49 16' : 'M23 18L45 5'} />
+      <circle cx="23" cy="18" r="2.2" fill="currentColor" stroke="none" />
+      <circle cx="49" cy="18" r="2.2" fill="currentColor" stroke="none" />
     </svg>
   )
 }

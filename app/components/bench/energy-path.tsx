@@ -17,7 +17,7 @@ type Props = { view: BenchView; state: BenchState; isAtControls: boolean }
 export function EnergyPath({ view, state, isAtControls }: Props) {
   return (
     <section aria-label="Energy path" className="grid gap-1.5">
-      <div className="grid gap-y-4 border-x-[3px] border-ink py-1 sm:grid-cols-2 lg:grid-cols-[minmax(9.5rem,.8fr)_auto_minmax(0,1fr)_minmax(0,1fr)]">
+      <div className="grid gap-y-4 border-x-[3px] border-ink py-1 sm:grid-cols-2 lg:grid-cols-[minmax(9.5rem,.8fr)_auto_minmax(15rem,1fr)_minmax(15rem,1fr)]">
         <HeaterStage view={view} state={state} isAtControls={isAtControls} />
         <div className="px-4 sm:col-span-2 sm:row-start-2 lg:col-span-1 lg:row-start-auto lg:px-0">
           <ContactChain contacts={state.contacts} />

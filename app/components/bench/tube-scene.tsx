@@ -4,7 +4,7 @@ import { pathOf, type TubeGeometry } from './tube-geometry.ts'
 type Props = {
   geometry: TubeGeometry
   picture: Picture | null
-  /** The id of the blur; without one the beam is drawn without its halo. */
+  /** The id of the blur. Without one the beam alone is drawn, without gun and halo: for the enlargement. */
   blurId: string | null
 }
 
@@ -29,11 +29,13 @@ export function TubeScene({ geometry, picture, blurId }: Props) {
           <path d={path} className="stroke-beam" strokeWidth={picture.widthMillimetres} data-beam="" />
         </g>
       )}
-      <path
-        d={`M${gun.x - 4} ${-gun.y + 10}v-9h8v9zM${gun.x} ${-gun.y + 10}V${bulbRadius + 2}`}
-        className="fill-glass stroke-ink-soft"
-        strokeWidth="0.6"
-      />
+      {blurId && (
+        <path
+          d={`M${gun.x - 4} ${-gun.y + 10}v-9h8v9zM${gun.x} ${-gun.y + 10}V${bulbRadius + 2}`}
+          className="fill-glass stroke-ink-soft"
+          strokeWidth="0.6"
+        />
+      )}
     </g>
   )
 }
@@ -42,7 +44,7 @@ export function TubeScene({ geometry, picture, blurId }: Props) {
 export function TubeScale({ geometry, edges }: { geometry: TubeGeometry; edges: number[] }) {
   const { y, zero, length, marks } = geometry.scale
   return (
-    <g className="fill-ink-soft stroke-ink-soft" strokeWidth="0.3">
+    <g className="fill-ink-soft stroke-ink-soft" strokeWidth="0.4">
       <path
         d={`M${zero} ${-y}h${length}${marks.map(({ x, length: tall }) => `M${x} ${-y}v${tall}`).join('')}`}
         fill="none"

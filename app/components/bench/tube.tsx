@@ -20,10 +20,16 @@ export function Tube({ benchId, config, edges }: Props) {
   const isLive = useLink().kind === 'connected'
   const picture = isLive && config.picturePath !== null ? received : null
   const [sight, setSight] = useState<Sight | null>(null)
+  const [isSighting, setSighting] = useState(false)
   const blurId = useId()
   const { box } = geometry
   const isSeen = picture !== null && picture.points.length > 1
   const marks = edges.map((metres) => geometry.scale.zero + metres * 1000)
+
+  function follow(event: React.PointerEvent<SVGSVGElement>) {
+    setSight(toMillimetres(event, geometry))
+    setSighting(true)
+  }
 
   return (
     <figure className="grid gap-2">
@@ -33,8 +39,9 @@ export function Tube({ benchId, config, edges }: Props) {
           className="block w-full touch-pan-y"
           role="img"
           aria-label={tubeWords(config, isSeen)}
-          onPointerMove={(event) => setSight(toMillimetres(event, geometry))}
-          onPointerDown={(event) => setSight(toMillimetres(event, geometry))}
+          onPointerMove={follow}
+          onPointerDown={follow}
+          onPointerLeave={() => setSighting(false)}
         >
           <defs>
             <filter id={blurId} x="-50%" y="-50%" width="200%" height="200%">
@@ -43,7 +50,7 @@ export function Tube({ benchId, config, edges }: Props) {
           </defs>
           <TubeScene geometry={geometry} picture={picture} blurId={blurId} />
           <TubeScale geometry={geometry} edges={marks} />
-          {sight && (
+          {sight && isSighting && (
             <path
               d={`M${sight.x} ${box.top}V${box.top + box.height}`}
               className="stroke-ink-soft"
@@ -53,7 +60,14 @@ export function Tube({ benchId, config, edges }: Props) {
           )}
         </svg>
       </div>
-      <Enlargement geometry={geometry} picture={picture} edges={marks} sight={sight} setSight={setSight} />
+      <Enlargement
+        geometry={geometry}
+        picture={picture}
+        edges={marks}
+        sight={sight}
+        setSight={setSight}
+        setSighting={setSighting}
+      />
     </figure>
   )
 }
@@ -78,12 +92,14 @@ type EnlargementProps = {
   edges: number[]
   sight: Sight | null
   setSight: (sight: Sight) => void
+  setSighting: (isSighting: boolean) => void
 }
 
 const halfWidth = 7
 
 /** Beam and scale on either side of the sight line, enlarged alike. Moved by pointer over the tube, or by its slider. */
-function Enlargement({ geometry, picture, edges, sight, setSight }: EnlargementProps) {
+function Enlargement(props: EnlargementProps) {
+  const { geometry, picture, edges, sight, setSight, setSighting } = props
   const id = useId()
   const { scale } = geometry
   const x = sight?.x ?? scale.zero + scale.length / 2
@@ -91,7 +107,7 @@ function Enlargement({ geometry, picture, edges, sight, setSight }: EnlargementP
   return (
     <div className="grid gap-1">
       <svg
-        viewBox="0 0 140 44"
+        viewBox="0 0 140 32"
         className="block w-full rounded-md border border-rule bg-glass"
         role="img"
         aria-label="Enlargement at the sight line"
@@ -101,22 +117,22 @@ function Enlargement({ geometry, picture, edges, sight, setSight }: EnlargementP
           x="0"
           y="0"
           width="140"
-          height="22"
-          viewBox={`${x - halfWidth} ${-y - 1.1} ${2 * halfWidth} 2.2`}
+          height="16"
+          viewBox={`${x - halfWidth} ${-y - 0.8} ${2 * halfWidth} 1.6`}
         >
           <TubeScene geometry={geometry} picture={picture} blurId={null} />
         </svg>
         <svg
           aria-hidden="true"
           x="0"
-          y="22"
+          y="16"
           width="140"
-          height="22"
-          viewBox={`${x - halfWidth} ${-scale.y - 1} ${2 * halfWidth} 2.2`}
+          height="16"
+          viewBox={`${x - halfWidth} ${-scale.y - 0.8} ${2 * halfWidth} 1.6`}
         >
           <EnlargedScale geometry={geometry} edges={edges} />
         </svg>
-        <path d="M70 0V44" className="stroke-ink" strokeWidth="0.4" />
+        <path d="M70 0V32" className="stroke-ink" strokeWidth="0.4" />
       </svg>
       <div className="flex items-center gap-3 text-[12.5px] text-ink-soft">
         <label htmlFor={id}>sight line</label>
@@ -128,6 +144,8 @@ function Enlargement({ geometry, picture, edges, sight, setSight }: EnlargementP
           step="0.1"
           value={x}
           onChange={(event) => setSight({ x: Number(event.target.value), y })}
+          onFocus={() => setSighting(true)}
+          onBlur={() => setSighting(false)}
           aria-valuetext={`${((x - scale.zero) / 10).toFixed(1)} centimetres on the scale`}
           className="min-w-0 flex-1"
         />
@@ -142,19 +160,19 @@ function EnlargedScale({ geometry, edges }: { geometry: TubeGeometry; edges: num
   return (
     <g className="fill-ink-soft stroke-ink-soft" strokeWidth="0.06">
       <path
-        d={`M${zero} ${-y - 0.9}h${length}${marks.map((mark) => `M${mark.x} ${-y - 0.9}v${mark.length / 5.5}`).join('')}`}
+        d={`M${zero} ${-y - 0.7}h${length}${marks.map((mark) => `M${mark.x} ${-y - 0.7}v${mark.length / 7}`).join('')}`}
         fill="none"
       />
       {marks.map(
         (mark) =>
           mark.label && (
-            <text key={mark.x} x={mark.x + 0.15} y={-y + 1.05} fontSize="0.9" stroke="none">
+            <text key={mark.x} x={mark.x + 0.12} y={-y + 0.68} fontSize="0.62" stroke="none">
               {mark.label}
             </text>
           ),
       )}
       {edges.map((edge) => (
-        <path key={edge} d={`M${edge} ${-y - 0.9}l-0.2 -0.3h0.4z`} className="fill-ink" stroke="none" />
+        <path key={edge} d={`M${edge} ${-y - 0.7}l-0.12 -0.1h0.24z`} className="fill-ink" stroke="none" />
       ))}
     </g>
   )
