@@ -10,6 +10,7 @@ export default defineConfig({
   expect: { timeout: 10_000 },
   reporter: [['list'], ['json']],
   use: {
+    actionTimeout: 15_000,
     browserName: 'chromium',
     launchOptions: {
       executablePath: process.env.CHROMIUM ?? '/usr/bin/chromium',

@@ -8,7 +8,18 @@ export function RoomLightSwitch() {
   const stored = useRouteLoaderData<typeof loader>('root')?.roomLight ?? 'lit'
   const light = fetcher.formData?.get('roomLight') ?? stored
   return (
-    <fetcher.Form method="post" action={href('/room-light')} className="flex items-center gap-2">
+    <fetcher.Form
+      method="post"
+      action={href('/room-light')}
+      className="flex items-center gap-2"
+      onSubmit={(event) => {
+        // With scripts the person stays where they are, whatever page they have gone to by the time of the answer.
+        event.preventDefault()
+        const { submitter } = event.nativeEvent as SubmitEvent
+        if (submitter instanceof HTMLButtonElement)
+          fetcher.submit({ roomLight: submitter.value }, { method: 'post', action: href('/room-light') })
+      }}
+    >
       <span className="text-ink-soft max-sm:sr-only" id="room-light">
         room light
       </span>

@@ -17,6 +17,7 @@ test('A newcomer brings the tube up, captures a reading, reads the edges off the
   // A tall page keeps the whole tube in one picture, at the resolution of a good screen.
   await page.setViewportSize({ width: 1280, height: 1600 })
   await page.getByRole('link', { name: /Bench 1/ }).click()
+  await page.waitForURL('**/benches/bench-1')
   await page.getByRole('button', { name: 'dark', exact: true }).click()
 
   await test.step('acknowledges the cautions', async () => {

@@ -1,5 +1,6 @@
 import { href, Link } from 'react-router'
 import { useBenchState, useLatest, useMakeSafe, usePicture } from '../../telemetry/telemetry.tsx'
+import { fixed } from '../figures.ts'
 import { benchSummary } from './attention.ts'
 import { SmallTube } from './small-tube.tsx'
 
@@ -86,7 +87,7 @@ function Figure({ name, benchId, channel, digits, unit }: FigureProps) {
     <>
       <dt className="text-ink-soft">{name}</dt>
       <dd className="text-right font-medium whitespace-nowrap">
-        {value == null ? '–' : value.toFixed(digits)} <span className="font-normal">{unit}</span>
+        {value == null ? '–' : fixed(value, digits)} <span className="font-normal">{unit}</span>
       </dd>
     </>
   )

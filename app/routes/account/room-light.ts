@@ -17,7 +17,9 @@ export async function action({ request, context }: Route.ActionArgs) {
   const db = context.get(databaseContext)
   const person = await getPerson(db, request)
   if (person) await db.update(people).set({ roomLight: light.data }).where(eq(people.id, person.id))
-  return redirect(localPath(form.get('returnTo')), {
-    headers: { 'Set-Cookie': await roomLightCookie(light.data) },
-  })
+  const headers = { 'Set-Cookie': await roomLightCookie(light.data) }
+  const returnTo = form.get('returnTo')
+  return returnTo === null
+    ? data({ roomLight: light.data }, { headers })
+    : redirect(localPath(returnTo), { headers })
 }
