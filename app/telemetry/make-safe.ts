@@ -46,7 +46,9 @@ async function postMakeSafe(benchId: string | null) {
       return { state: 'answered' as const, sentence: reply.answer }
     if ('refusals' in reply && Array.isArray(reply.refusals)) {
       const [first] = reply.refusals as { sentence?: string }[]
-      return first?.sentence ? { ...failed, sentence: `${failed.sentence} ${first.sentence}` } : failed
+      return first?.sentence
+        ? { ...failed, sentence: `Make safe could not be delivered. ${first.sentence}` }
+        : failed
     }
     return failed
   } catch {

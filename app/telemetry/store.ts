@@ -99,6 +99,8 @@ export class TelemetryStore {
         this.#clockAhead = null
         this.resumeKey = message.resumeKey
         this.setLink({ kind: 'connected' })
+        // What could not be delivered is old news once the bench itself can be heard again.
+        if (this.#report?.state === 'failed') this.setReport(null)
         break
       case 'samples': {
         const bench = this.#bench(message.benchId)

@@ -32,22 +32,20 @@ function LinkBanner() {
   const link = useLink()
   if (link.kind === 'connected' || link.kind === 'connecting') return null
   return (
-    <div role="alert" className="hatch border border-caution px-4 py-2.5">
-      <p className="w-fit bg-ground px-1 text-caution">
-        {link.kind === 'refused' ? (
-          <>
-            <b>No telemetry.</b> {link.reason} Nothing on this page is live; make safe still works through the
-            web application.
-          </>
-        ) : (
-          <>
-            <b>The link to the bridge is lost</b> <Since seconds={link.since} />.{' '}
-            {link.reason ? `${link.reason} ` : ''}The figures below are old: treat the bench as live. The
-            bridge keeps its limits and interlocks. Trying again; make safe still works.
-          </>
-        )}
-      </p>
-    </div>
+    <Hatched aside={link.kind === 'reconnecting' && <Since seconds={link.since} />}>
+      {link.kind === 'refused' ? (
+        <>
+          <b>No telemetry.</b> {link.reason} Nothing on this page is live; make safe still works through the
+          web application.
+        </>
+      ) : (
+        <>
+          <b>The link to the bridge is lost.</b> {link.reason ? `${link.reason} ` : ''}The figures below are
+          old: treat the bench as live. The bridge keeps its limits and interlocks. Trying again; make safe
+          still works.
+        </>
+      )}
+    </Hatched>
   )
 }
 
@@ -55,20 +53,32 @@ function LinkBanner() {
 function Since({ seconds }: { seconds: number }) {
   // The tick alone is wanted: it renders this anew every second.
   useBridgeSeconds()
-  return <>since {age(Date.now() / 1000 - seconds)}</>
+  return <>Since {age(Date.now() / 1000 - seconds)}.</>
 }
 
 function LostBanner({ state }: { state: BenchState }) {
   const now = useBridgeSeconds()
   const lost = Object.entries(state.ports).filter(([, port]) => port !== 'open')
   return (
-    <div role="alert" className="hatch border border-caution px-4 py-2.5">
-      <p className="w-fit bg-ground px-1 text-caution">
-        <b>Voltage unknown: treat as live.</b> The line to the{' '}
-        {lost.map(([instrument]) => instrument).join(', ') || 'instruments'} is lost
-        {now === null ? '' : ` since ${age(now - state.since)}`}. The supply switches its outputs off by
-        itself when it hears nothing. Check the cable and the instrument; the bridge keeps trying.
-      </p>
+    <Hatched aside={now !== null && `Since ${age(now - state.since)}.`}>
+      <b>Voltage unknown: treat as live.</b> The line to the{' '}
+      {lost.map(([instrument]) => instrument).join(', ') || 'instruments'} is lost. The supply switches its
+      outputs off by itself when it hears nothing. Check the cable and the instrument; the bridge keeps
+      trying.
+    </Hatched>
+  )
+}
+
+/** A caution. What counts on stands beside the alert, so that it is not read out every second. */
+function Hatched({ children, aside }: { children: React.ReactNode; aside: React.ReactNode }) {
+  return (
+    <div className="hatch border border-caution px-4 py-2.5">
+      <div className="w-fit bg-ground px-1 text-caution">
+        <p role="alert" className="inline">
+          {children}
+        </p>{' '}
+        <span>{aside}</span>
+      </div>
     </div>
   )
 }
