@@ -110,7 +110,7 @@ export class Apparatus {
     const volts = values.anodeVolts ?? values.anodeSupplyVolts
     if (volts !== null) this.anodeMeasured = { volts, at }
     this.ring.push(at, values)
-    this.statuses.add(at, values)
+    this.statuses.add(at, values, this.outputs.views)
     this.#recorder.add(this.#options.wallOf(at), values)
     this.#options.onSample()
     const { next } = this.ring

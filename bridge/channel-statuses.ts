@@ -1,7 +1,13 @@
 import { ChannelWatch } from '#app/analysis/settled-window.ts'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { ChannelStatus } from '#app/protocol/messages.ts'
-import { type Channel, type ChannelValues, channels, type Output } from '#app/safety/types.ts'
+import {
+  type Channel,
+  type ChannelValues,
+  channels,
+  type Output,
+  outputs as outputNames,
+} from '#app/safety/types.ts'
 import type { OutputView } from '#app/safety/view.ts'
 
 const outputOf: Record<Channel, Output | null> = {
@@ -43,6 +49,7 @@ function tolerances({ tolerance, limits, coilResistance }: BenchConfig): Record<
 export class ChannelStatuses {
   readonly #tolerances: Record<Channel, Tolerance>
   readonly #watches: Record<Channel, ChannelWatch>
+  readonly #changedAt: Partial<Record<Output, number>> = {}
 
   constructor(config: BenchConfig) {
     this.#tolerances = tolerances(config)
@@ -59,8 +66,19 @@ export class ChannelStatuses {
     ) as Record<Channel, ChannelWatch>
   }
 
-  add(at: number, values: ChannelValues): void {
+  add(at: number, values: ChannelValues, outputs: Readonly<Record<Output, OutputView>>): void {
+    this.#follow(outputs)
     for (const channel of channels) this.#watches[channel].add(at, values[channel])
+  }
+
+  /** A window never reaches back across a change of its output: what was settled before says nothing of now. */
+  #follow(outputs: Readonly<Record<Output, OutputView>>): void {
+    for (const channel of channels) {
+      const output = outputOf[channel]
+      if (output !== null && outputs[output].changedAt !== this.#changedAt[output])
+        this.#watches[channel].reset()
+    }
+    for (const output of outputNames) this.#changedAt[output] = outputs[output].changedAt
   }
 
   status(
@@ -69,9 +87,18 @@ export class ChannelStatuses {
     values: ChannelValues,
     outputs: Readonly<Record<Output, OutputView>>,
   ): ChannelStatus {
+    this.#follow(outputs)
     const { state, reason, mean, standardDeviation, driftPerSecond } = this.#watches[channel].status(now)
     const output = outputOf[channel]
     const value = values[channel]
+    if (mean === null && value !== null)
+      return {
+        state: 'settling',
+        reason: 'its setpoint has just changed',
+        mean,
+        standardDeviation,
+        driftPerSecond,
+      }
     if (
       output !== null &&
       !outputs[output].on &&
