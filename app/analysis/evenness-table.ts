@@ -29,7 +29,7 @@ const RADIUS_TERMS = 28
 const STEPS_PER_TURN = 192
 /** Part of the windings' inner radius up to which an orbit may reach. */
 const REACH = 0.85
-const GEOMETRY_STEP = 1e-3
+const GEOMETRY_STEP = 2e-4
 /** An edge this short of a full turn is the gun itself, where the beam ends. */
 const FULL_TURN_MARGIN = 0.005
 
@@ -176,26 +176,30 @@ function largestOrbit(size: (uniform: number) => number, reach: number): { unifo
   return { uniform, radius: size(uniform) }
 }
 
-/** The uniform-field radius of the orbit with the given size, which grows with it. */
+/** The uniform-field radius of the orbit with the given size, by the Illinois form of false position. */
 function solveUniformRadius(
   size: (uniform: number) => number,
   radius: number,
   largest: { uniform: number; radius: number },
 ): number {
-  let low = 0
-  let high = largest.uniform
-  let guess = (radius * largest.uniform) / largest.radius
-  for (let i = 0; i < 60; i++) {
-    const found = size(guess)
-    if (found > radius) high = guess
-    else low = guess
-    let next = (guess * radius) / found
-    if (!(next >= low && next <= high)) next = (low + high) / 2
-    const step = Math.abs(next - guess)
-    guess = next
-    if (step <= 1e-14 * guess) break
+  let [low, below] = [0, -radius]
+  let [high, above] = [largest.uniform, largest.radius - radius]
+  let side = 0
+  for (let i = 0; i < 100; i++) {
+    const guess = (low * above - high * below) / (above - below)
+    const excess = size(guess) - radius
+    if (Math.abs(excess) <= 1e-14 * radius || guess === low || guess === high) return guess
+    if (excess > 0) {
+      ;[high, above] = [guess, excess]
+      if (side === 1) below /= 2
+      side = 1
+    } else {
+      ;[low, below] = [guess, excess]
+      if (side === -1) above /= 2
+      side = -1
+    }
   }
-  return guess
+  return (low + high) / 2
 }
 
 function withRadius(pair: CoilPair, change: number): CoilPair {

@@ -1,4 +1,3 @@
-import type { BudgetInput } from '#app/metrology/budget.ts'
 import {
   standardUncertaintyFromAccuracy,
   standardUncertaintyFromHalfWidth,
@@ -58,75 +57,80 @@ export type Reading = {
 export const budgetGroups = ['anode voltage', 'coil current', 'edges', 'coil pair', 'beam'] as const
 export type BudgetGroup = (typeof budgetGroups)[number]
 
-export type Row = Omit<BudgetInput, 'value'> & { group: BudgetGroup; sensitivity: number }
+/** One line of the budget; `degreesOfFreedom` Infinity for type B. */
+export type Row = {
+  name: string
+  group: BudgetGroup
+  sensitivity: number
+  standardUncertainty: number
+  degreesOfFreedom: number
+  common: boolean
+}
 
 /** Mean and spread of what several people read for one edge. */
 export type Edge = { count: number; mean: number; standardError: number }
 
-export function voltageRows({ bench, ...reading }: Reading & { bench: ReadingBench }, sensitivity: number) {
+function typeA(
+  group: BudgetGroup,
+  name: string,
+  sensitivity: number,
+  standardUncertainty: number,
+  degreesOfFreedom = Number.POSITIVE_INFINITY,
+): Row {
+  return { name, group, sensitivity, standardUncertainty, degreesOfFreedom, common: false }
+}
+
+function common(group: BudgetGroup, name: string, sensitivity: number, standardUncertainty: number): Row {
+  return {
+    name,
+    group,
+    sensitivity,
+    standardUncertainty,
+    degreesOfFreedom: Number.POSITIVE_INFINITY,
+    common: true,
+  }
+}
+
+export function voltageRows(bench: ReadingBench, reading: Reading, sensitivity: number): Row[] {
+  const group = 'anode voltage'
   const { percentOfReading, digits, digitSizeVolts: digitSize, uCorrectionVolts = 0 } = bench.anodeMeter
   const accuracy = { reading: reading.voltageVolts, percentOfReading, digits, digitSize }
-  const row = { group: 'anode voltage', sensitivity } as const
-  return {
-    anodeVoltage: {
-      ...row,
-      standardUncertainty: reading.uVoltageVolts,
-      ...freedom(reading.voltageDegreesOfFreedom),
-    },
-    anodeResolution: { ...row, standardUncertainty: standardUncertaintyFromResolution(digitSize) },
-    anodeMeter: { ...row, standardUncertainty: standardUncertaintyFromAccuracy(accuracy), common: true },
-    ...(uCorrectionVolts === 0
-      ? {}
-      : { anodeCorrection: { ...row, standardUncertainty: uCorrectionVolts, common: true } }),
-  }
+  const rows = [
+    typeA(group, 'anodeVoltage', sensitivity, reading.uVoltageVolts, reading.voltageDegreesOfFreedom),
+    typeA(group, 'anodeResolution', sensitivity, standardUncertaintyFromResolution(digitSize)),
+    common(group, 'anodeMeter', sensitivity, standardUncertaintyFromAccuracy(accuracy)),
+  ]
+  if (uCorrectionVolts > 0) rows.push(common(group, 'anodeCorrection', sensitivity, uCorrectionVolts))
+  return rows
 }
 
-export function currentRows({ bench, ...reading }: Reading & { bench: ReadingBench }, sensitivity: number) {
+export function currentRows(bench: ReadingBench, reading: Reading, sensitivity: number): Row[] {
+  const group = 'coil current'
   const { percentOfReading, digits, digitSizeAmps: digitSize } = bench.coilMeter
   const accuracy = { reading: reading.currentAmps, percentOfReading, digits, digitSize }
-  const row = { group: 'coil current', sensitivity } as const
-  return {
-    coilCurrent: {
-      ...row,
-      standardUncertainty: reading.uCurrentAmps,
-      ...freedom(reading.currentDegreesOfFreedom),
-    },
-    coilResolution: { ...row, standardUncertainty: standardUncertaintyFromResolution(digitSize) },
-    coilMeter: { ...row, standardUncertainty: standardUncertaintyFromAccuracy(accuracy), common: true },
-  }
+  return [
+    typeA(group, 'coilCurrent', sensitivity, reading.uCurrentAmps, reading.currentDegreesOfFreedom),
+    typeA(group, 'coilResolution', sensitivity, standardUncertaintyFromResolution(digitSize)),
+    common(group, 'coilMeter', sensitivity, standardUncertaintyFromAccuracy(accuracy)),
+  ]
 }
 
-export function edgeRows(
-  scale: ReadingBench['scale'],
-  left: Edge,
-  right: Edge,
-  perEdge: number,
-): Record<string, Row> {
+/** `perEdge` is ∂(e/m)/∂ of the right edge as read, the left edge's with the sign turned. */
+export function edgeRows(scale: ReadingBench['scale'], left: Edge, right: Edge, perEdge: number): Row[] {
+  const group = 'edges'
   const resolution = standardUncertaintyFromResolution(scale.graduationMetres * scale.readableFraction)
-  const rows: Record<string, Row> = {}
-  for (const [name, { count, standardError }, sensitivity] of [
-    ['leftEdge', left, -perEdge],
-    ['rightEdge', right, perEdge],
-  ] as const) {
-    rows[`${name}Resolution`] = { group: 'edges', sensitivity, standardUncertainty: resolution }
-    if (count > 1) {
-      rows[`${name}Spread`] = {
-        group: 'edges',
-        sensitivity,
-        standardUncertainty: standardError,
-        degreesOfFreedom: count - 1,
-      }
-    }
-  }
+  const rows = [
+    typeA(group, 'leftEdgeResolution', -perEdge, resolution),
+    typeA(group, 'rightEdgeResolution', perEdge, resolution),
+  ]
+  if (left.count > 1) rows.push(typeA(group, 'leftEdgeSpread', -perEdge, left.standardError, left.count - 1))
+  if (right.count > 1)
+    rows.push(typeA(group, 'rightEdgeSpread', perEdge, right.standardError, right.count - 1))
   if (scale.kind === 'ruler-behind') {
     // d = (right − left)(L − δ)/L, and perEdge already holds the factor (L − δ)/L.
     const rest = scale.eyeDistanceMetres - scale.distanceBehindMetres
-    rows.scaleDistance = {
-      group: 'edges',
-      sensitivity: (-perEdge * (right.mean - left.mean)) / rest,
-      standardUncertainty: scale.uDistanceBehindMetres,
-      common: true,
-    }
+    const perDistance = (-perEdge * (right.mean - left.mean)) / rest
+    rows.push(common(group, 'scaleDistance', perDistance, scale.uDistanceBehindMetres))
   }
   return rows
 }
@@ -137,36 +141,22 @@ export function pairRows(
   table: EvennessTable,
   radius: number,
   perFactor: number,
-): Record<string, Row> {
+): Row[] {
+  const group = 'coil pair'
   const g = table.g.value(radius)
-  const row = { group: 'coil pair', common: true } as const
   if (bench.fieldFactor) {
-    const { standardUncertainty } = bench.fieldFactor
-    return { fieldFactor: { ...row, sensitivity: perFactor * g, standardUncertainty } }
+    return [common(group, 'fieldFactor', perFactor * g, bench.fieldFactor.standardUncertainty)]
   }
   const { slopes, teslaPerAmp: k } = table
   const perRadius = slopes.perRadiusMetre * g + k * table.gPerRadiusMetre.value(radius)
   const perSeparation = slopes.perSeparationMetre * g + k * table.gPerSeparationMetre.value(radius)
-  return {
-    coilTurns: {
-      ...row,
-      sensitivity: perFactor * slopes.perTurn * g,
-      standardUncertainty: bench.uTurns ?? 0,
-    },
-    coilRadius: { ...row, sensitivity: perFactor * perRadius, standardUncertainty: bench.uRadiusMetres ?? 0 },
-    coilSeparation: {
-      ...row,
-      sensitivity: perFactor * perSeparation,
-      standardUncertainty: bench.uSeparationMetres ?? 0,
-    },
-  }
+  return [
+    common(group, 'coilTurns', perFactor * slopes.perTurn * g, bench.uTurns ?? 0),
+    common(group, 'coilRadius', perFactor * perRadius, bench.uRadiusMetres ?? 0),
+    common(group, 'coilSeparation', perFactor * perSeparation, bench.uSeparationMetres ?? 0),
+  ]
 }
 
-export function beamRow(bench: ReadingBench, sensitivity: number): Row {
-  const standardUncertainty = standardUncertaintyFromHalfWidth(bench.beam.halfWidthMetres)
-  return { group: 'beam', sensitivity, standardUncertainty, common: true }
-}
-
-function freedom(degreesOfFreedom: number | undefined) {
-  return degreesOfFreedom === undefined ? {} : { degreesOfFreedom }
+export function beamRow(bench: ReadingBench, perRadius: number): Row {
+  return common('beam', 'beamEdge', perRadius, standardUncertaintyFromHalfWidth(bench.beam.halfWidthMetres))
 }

@@ -1,5 +1,5 @@
 import type { Contribution } from '#app/metrology/budget.ts'
-import { combineBudget } from '#app/metrology/budget.ts'
+import { expandIndependent } from '#app/metrology/coverage.ts'
 import { chargeToMass } from '#app/physics/charge-to-mass.ts'
 import { speedOfLight } from '#app/physics/constants.ts'
 import {
@@ -85,20 +85,20 @@ export function readingBudget(
   const perVolt = (value / volts) * (2 * stretch - 1)
   const perField = (-2 * value * stretch) / fieldTesla
   const perRadius = (-2 * value * stretch * (1 + (radius * table.g.slope(radius)) / g)) / radius
-  const rows: Record<string, Row> = {
-    ...voltageRows(reading, perVolt),
-    ...currentRows(reading, perField * k * g * perCoil * Math.sign(currentAmps)),
+  const perAmp = perField * k * g * perCoil * Math.sign(currentAmps)
+  const rows = [
+    ...voltageRows(bench, reading, perVolt),
+    ...currentRows(bench, reading, perAmp),
     ...edgeRows(bench.scale, left, right, (perRadius * parallax) / 2),
     ...pairRows(bench, table, radius, perField * amps),
-    beamEdge: beamRow(bench, perRadius),
-  }
-  return {
-    ...summarise(value, rows),
+    beamRow(bench, perRadius),
+  ]
+  return Object.assign(summarise(value, rows), {
     diameterMetres,
     evenness: 1 / g ** 2,
     fieldTesla,
     currentPerCoilAmps: amps,
-  }
+  })
 }
 
 /**
@@ -194,26 +194,32 @@ function tableOf(bench: ReadingBench, sense: 1 | -1): EvennessTable {
   return table
 }
 
-function summarise(value: number, rows: Record<string, Row>) {
-  const sensitivities: Record<string, number> = {}
-  for (const [name, row] of Object.entries(rows)) {
-    sensitivities[name] = row.sensitivity
-  }
-  const {
-    contributions,
-    isWelchSatterthwaiteValid: _,
-    ...budget
-  } = combineBudget({ value, inputs: rows, sensitivities })
-  const shares = Object.fromEntries(budgetGroups.map((name) => [name, 0])) as Record<BudgetGroup, number>
-  const grouped: ReadingResult['contributions'] = {}
-  for (const [name, { group, common = false }] of Object.entries(rows)) {
-    const contribution = contributions[name] as Contribution
-    shares[group] += contribution.share
-    grouped[name] = { ...contribution, group, common }
-  }
+function summarise(value: number, rows: readonly Row[]) {
+  const parts = rows.map((row) => Math.abs(row.sensitivity) * row.standardUncertainty)
+  const expanded = expandIndependent(
+    parts,
+    rows.map((row) => row.degreesOfFreedom),
+  )
+  const variance = expanded.standardUncertainty ** 2
+  const groups = budgetGroups.map((name) => ({ name, share: 0 }))
+  const contributions: ReadingResult['contributions'] = {}
+  let commonVariance = 0
+  let independentVariance = 0
+  rows.forEach(({ name, group, sensitivity, common }, i) => {
+    const contribution = parts[i] as number
+    const square = contribution * contribution
+    const share = variance > 0 ? square / variance : 0
+    contributions[name] = { sensitivity, contribution, share, group, common }
+    for (const entry of groups) if (entry.name === group) entry.share += share
+    if (common) commonVariance += square
+    else independentVariance += square
+  })
   return {
-    ...budget,
-    contributions: grouped,
-    groups: budgetGroups.map((name) => ({ name, share: shares[name] })),
+    value,
+    ...expanded,
+    commonUncertainty: Math.sqrt(commonVariance),
+    independentUncertainty: Math.sqrt(independentVariance),
+    contributions,
+    groups,
   }
 }

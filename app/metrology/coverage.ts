@@ -48,3 +48,22 @@ export function coverageFactor(degreesOfFreedom: number, probability = 0.95): nu
   requireProbability('probability', probability)
   return studentQuantile((1 + probability) / 2, degreesOfFreedom)
 }
+
+/**
+ * Combined and expanded uncertainty (95 %, Student's t) of independent contributions.
+ *
+ * @param contributions |c|u of each input, in the unit of the result
+ * @param degreesOfFreedom ν of each input, Infinity accepted
+ * @throws RangeError as `effectiveDegreesOfFreedom` does
+ */
+export function expandIndependent(contributions: readonly number[], degreesOfFreedom: readonly number[]) {
+  const effective = effectiveDegreesOfFreedom(contributions, degreesOfFreedom)
+  const standardUncertainty = Math.sqrt(contributions.reduce((sum, part) => sum + part * part, 0))
+  const k = coverageFactor(effective)
+  return {
+    standardUncertainty,
+    effectiveDegreesOfFreedom: effective,
+    coverageFactor: k,
+    expandedUncertainty: k * standardUncertainty,
+  }
+}

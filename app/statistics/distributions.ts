@@ -3,6 +3,8 @@ import { incompleteBeta, incompleteGamma, logBeta, logGamma } from './special-fu
 
 /** Above this the square of the normal and of the Student quantile agree to the last digit. */
 const NORMAL_DEGREES_OF_FREEDOM = 1e17
+/** Newton steps double the digits: after a step this small the next would be below rounding. */
+const LAST_STEP = 1e-9
 
 /** Probability that a standard normal variable is above z, with its own relative accuracy for z > 0. */
 export function normalUpperTail(z: number): number {
@@ -35,7 +37,7 @@ export function normalQuantile(p: number): number {
     const density = Math.exp((-z * z) / 2) / Math.sqrt(2 * Math.PI)
     const step = (above / density) * Math.log(above / tail)
     z += step
-    if (Math.abs(step) <= 4e-16 * Math.max(1, Math.abs(z))) break
+    if (Math.abs(step) <= LAST_STEP * Math.max(1, Math.abs(z))) break
   }
   return p < 0.5 ? -z : z
 }
@@ -105,7 +107,7 @@ function centralStudent(middle: number, nu: number): number {
     const inside = incompleteBeta(0.5, nu / 2, square / (nu + square), nu / (nu + square)) / 2
     const step = (middle - inside) / Math.exp(logStudentDensity(t, nu))
     t += step
-    if (Math.abs(step) <= 2e-15 * t) break
+    if (Math.abs(step) <= LAST_STEP * t) break
   }
   return t
 }
@@ -125,7 +127,7 @@ function outerStudent(tail: number, nu: number): number {
     const slope = (t * Math.exp(logStudentDensity(t, nu))) / above
     const step = Math.log(above / tail) / slope
     t *= Math.exp(step)
-    if (Math.abs(step) <= 1e-15) break
+    if (Math.abs(step) <= LAST_STEP) break
   }
   return t
 }
@@ -244,7 +246,7 @@ function quantileOfPositive(
     }
     const step = next - u
     u = next
-    if (Math.abs(step) <= 1e-15 * Math.max(1, Math.abs(u))) break
+    if (Math.abs(step) <= 1e-14 * Math.max(1, Math.abs(u))) break
   }
   return Math.exp(u)
 }

@@ -103,7 +103,7 @@ describe('a live channel is', () => {
   })
 
   it('rarely called drifting by chance when its noise has a memory', () => {
-    // First-order autoregressive noise, φ = 0.8: with a plain t test some 40 % would count as drifts.
+    // First-order autoregressive noise, φ = 0.8: a plain t test would count more than half as drifts.
     const noise = gaussian(5)
     let drifting = 0
     const runs = 400
