@@ -19,7 +19,7 @@ export function Dialog({ isOpen, onOpenChange, title, children }: Props) {
         <Radix.Content
           aria-describedby={undefined}
           onFocusOutside={(event) => event.preventDefault()}
-          className="fixed top-24 left-1/2 z-40 grid max-h-[calc(100dvh-8rem)] w-[min(32rem,calc(100vw-1.5rem))] -translate-x-1/2 gap-4 overflow-y-auto rounded-md border border-ink bg-surface p-5"
+          className="fixed top-24 left-1/2 z-40 grid grid-cols-[minmax(0,1fr)] max-h-[calc(100dvh-8rem)] w-[min(32rem,calc(100vw-1.5rem))] -translate-x-1/2 gap-4 overflow-y-auto rounded-md border border-ink bg-surface p-5"
         >
           <Radix.Title className="text-[17px] font-bold">{title}</Radix.Title>
           {children}

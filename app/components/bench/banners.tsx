@@ -1,6 +1,7 @@
+import { useEffect, useState } from 'react'
 import type { BenchView } from '#app/benches/bench-view.server.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
-import { useBridgeSeconds, useLink } from '#app/telemetry/telemetry.tsx'
+import { useBridgeSeconds, useLink, useMakeSafeReport } from '#app/telemetry/telemetry.tsx'
 import { AnswerLine } from '../answer-line.tsx'
 import { age } from '../figures.ts'
 import { DeadManWarning } from './dead-man-warning.tsx'
@@ -9,14 +10,21 @@ import { useCommand } from './use-command.ts'
 
 type Props = { view: BenchView; state: BenchState | null }
 
-/** What needs a person now, above everything else of the page: link, line, trip, dead-man, warnings. */
+/** What needs a person now. What cannot wait stays in view below the header, wherever the page is scrolled to. */
 export function Banners({ view, state }: Props) {
+  const top = useHeaderHeight()
   return (
-    <div className="grid gap-2 empty:hidden">
-      <LinkBanner />
-      {state?.phase === 'lost' && <LostBanner state={state} />}
-      {state?.trip && <TripBanner view={view} state={state} />}
-      {state?.controls?.warned && <DeadManWarning controls={state.controls} personId={view.person.id} />}
+    <>
+      <div
+        style={{ top }}
+        className="sticky z-30 grid max-h-[50dvh] grid-cols-[minmax(0,1fr)] gap-2 overflow-y-auto bg-ground empty:hidden"
+      >
+        <LinkBanner />
+        {state?.phase === 'lost' && <LostBanner state={state} />}
+        {state?.trip && <TripBanner view={view} state={state} />}
+        {state?.controls?.warned && <DeadManWarning controls={state.controls} personId={view.person.id} />}
+        <MakeSafeAnswer />
+      </div>
       {state && !state.trip && state.phase !== 'lost' && <ShutdownNote state={state} />}
       {/* The lost line says all that its warnings say. */}
       {(state?.phase === 'lost' ? [] : (state?.warnings ?? [])).map((warning) => (
@@ -24,8 +32,21 @@ export function Banners({ view, state }: Props) {
           <span className="bg-ground px-1">Caution: {lowerFirst(warning)}</span>
         </p>
       ))}
-    </div>
+    </>
   )
+}
+
+/** Height of the header in pixels, which grows where its parts wrap. */
+function useHeaderHeight(): number {
+  const [height, setHeight] = useState(0)
+  useEffect(() => {
+    const header = document.querySelector('header')
+    if (!header) return
+    const observer = new ResizeObserver(() => setHeight(header.offsetHeight))
+    observer.observe(header)
+    return () => observer.disconnect()
+  }, [])
+  return height
 }
 
 function LinkBanner() {
@@ -113,6 +134,18 @@ function TripBanner({ view, state }: { view: BenchView; state: BenchState }) {
         </button>
       </command.Form>
     </section>
+  )
+}
+
+/** What became of a make safe of this page, until the bench's own state tells it. */
+function MakeSafeAnswer() {
+  const report = useMakeSafeReport()
+  const isLinked = useLink().kind === 'connected'
+  if (!report || (report.state === 'answered' && isLinked)) return null
+  return (
+    <p className={report.state === 'failed' ? 'tripped px-4 py-2' : 'border border-rule px-4 py-2'}>
+      {report.sentence}
+    </p>
   )
 }
 

@@ -1,5 +1,5 @@
 import type { BenchView } from '#app/benches/bench-view.server.ts'
-import { useBenchState, useLink, useMakeSafeReport } from '#app/telemetry/telemetry.tsx'
+import { useBenchState } from '#app/telemetry/telemetry.tsx'
 import { Banners } from './banners.tsx'
 import { nextStep } from './bring-up.ts'
 import { BringUpGuide } from './bring-up-guide.tsx'
@@ -42,7 +42,6 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
         </p>
       )}
       <Banners view={view} state={state} />
-      <MakeSafeAnswer />
       {step && <BringUpGuide step={step} benchId={config.benchId} />}
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[minmax(0,420px)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,560px)_minmax(0,1fr)]">
         <Tube
@@ -67,17 +66,5 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
         <CautionsGlance benchId={config.benchId} />
       </div>
     </div>
-  )
-}
-
-/** What became of a make safe of this page, until the bench's own state tells it. */
-function MakeSafeAnswer() {
-  const report = useMakeSafeReport()
-  const isLinked = useLink().kind === 'connected'
-  if (!report || (report.state === 'answered' && isLinked)) return null
-  return (
-    <p className={report.state === 'failed' ? 'tripped px-4 py-2' : 'border border-rule px-4 py-2'}>
-      {report.sentence}
-    </p>
   )
 }

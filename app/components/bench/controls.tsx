@@ -88,13 +88,13 @@ function HandOver({ view }: { view: BenchView }) {
         ) : (
           <command.Form method="post" action={command.action} className="grid gap-4">
             <input type="hidden" name="kind" value="hand-over" />
-            <label className="grid gap-1">
+            <label className="grid grid-cols-[minmax(0,1fr)] gap-1">
               <span className="font-medium">To whom</span>
               <select
                 name="toPersonId"
                 value={toPersonId}
                 onChange={(event) => setToPersonId(event.target.value)}
-                className="min-h-10 px-2"
+                className="min-h-10 w-full min-w-0 px-2"
               >
                 <option value="">Choose a person</option>
                 {others.map((person) => (
