@@ -367,28 +367,35 @@ export const waitUntilOff = (page: Page, benchId = 'bench-1'): Promise<BenchStat
     { benchId },
   )
 
-/** Takes the controls and warms the heater up. */
-export async function bringToReady(site: BridgeSite, page: Page, actor: Actor, benchId = 'bench-1') {
+/** Takes the controls and warms the heater up, at the bridge of this address. */
+export async function bringUpReady(address: string, page: Page, actor: Actor, benchId = 'bench-1') {
   await waitUntilOff(page, benchId)
-  await accept(site.address, actor, { kind: 'take-controls' }, benchId)
+  await accept(address, actor, { kind: 'take-controls' }, benchId)
   page.stay(benchId)
-  await accept(site.address, actor, { kind: 'switch-heater', on: true }, benchId)
+  await accept(address, actor, { kind: 'switch-heater', on: true }, benchId)
   return waitForState(page, ({ phase }) => phase === 'ready', { benchId })
 }
 
 /** Brings a bench up to an anode voltage and a coil current, and waits until both ramps have arrived. */
-export async function bringToLive(
-  site: BridgeSite,
+export async function bringUpLive(
+  address: string,
   page: Page,
   actor: Actor,
   { volts = 200, amps = 1, benchId = 'bench-1' } = {},
 ): Promise<BenchState> {
-  await bringToReady(site, page, actor, benchId)
-  await accept(site.address, actor, { kind: 'set-coils', amps }, benchId)
-  await accept(site.address, actor, { kind: 'set-anode', volts }, benchId)
+  await bringUpReady(address, page, actor, benchId)
+  await accept(address, actor, { kind: 'set-coils', amps }, benchId)
+  await accept(address, actor, { kind: 'set-anode', volts }, benchId)
   return waitForState(
     page,
     ({ phase, anode, coils }) => phase === 'live' && anode.commanded === volts && coils.commanded === amps,
     { benchId },
   )
 }
+
+export const bringToReady = (site: BridgeSite, ...rest: Rest<typeof bringUpReady>) =>
+  bringUpReady(site.address, ...rest)
+export const bringToLive = (site: BridgeSite, ...rest: Rest<typeof bringUpLive>) =>
+  bringUpLive(site.address, ...rest)
+
+type Rest<F> = F extends (address: string, ...rest: infer R) => unknown ? R : never
