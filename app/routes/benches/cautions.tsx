@@ -2,7 +2,7 @@ import { Form, href, Link, redirect, useNavigation } from 'react-router'
 import { acknowledgeCautions, hasAcknowledged } from '../../benches/acknowledgements.server.ts'
 import { cautions, cautionsLimits, termOf } from '../../benches/cautions.ts'
 import { requireVisibleBench } from '../../benches/visible-benches.server.ts'
-import { PageFrame } from '../../components/page-frame.tsx'
+import { BenchFrame } from '../../components/bench-frame.tsx'
 import { databaseContext, personContext } from '../../context.ts'
 import type { Route } from './+types/cautions'
 
@@ -12,6 +12,7 @@ export async function loader({ params, context }: Route.LoaderArgs) {
   const { id, name, place } = await requireVisibleBench(db, { benchId: params.benchId, person })
   return {
     bench: { id, name, place },
+    person: { id: person.id, role: person.role },
     isAcknowledged: await hasAcknowledged(db, person.id),
     term: termOf(new Date()),
   }
@@ -26,12 +27,12 @@ export async function action({ params, context }: Route.ActionArgs) {
 }
 
 export default function Cautions({ loaderData }: Route.ComponentProps) {
-  const { bench, isAcknowledged, term } = loaderData
+  const { bench, person, isAcknowledged, term } = loaderData
   const isBusy = useNavigation().state !== 'idle'
   const benchPage = href('/benches/:benchId', { benchId: bench.id })
 
   return (
-    <PageFrame where={<BenchLink name={bench.name} place={bench.place} to={benchPage} />}>
+    <BenchFrame bench={bench} person={person}>
       <title>{`Cautions · ${bench.name} · Coilside`}</title>
       <div className="mx-auto grid max-w-2xl gap-6 pb-10">
         <h1 className="text-2xl font-bold">Before you take the controls</h1>
@@ -48,7 +49,10 @@ export default function Cautions({ loaderData }: Route.ComponentProps) {
             </li>
           ))}
         </ol>
-        <p className="hatch border-l-4 border-caution px-4 py-3 font-medium">{cautionsLimits}</p>
+        <div className="grid grid-cols-[14px_1fr] gap-x-4">
+          <span aria-hidden className="hatch border-l-4 border-caution" />
+          <p className="py-1 font-medium">{cautionsLimits}</p>
+        </div>
         {isAcknowledged ? (
           <p role="status" className="flex flex-wrap items-center gap-x-5 gap-y-3">
             <span>You have acknowledged these for {term}.</span>
@@ -65,14 +69,6 @@ export default function Cautions({ loaderData }: Route.ComponentProps) {
           </Form>
         )}
       </div>
-    </PageFrame>
-  )
-}
-
-function BenchLink({ name, place, to }: { name: string; place: string; to: string }) {
-  return (
-    <Link to={to}>
-      <b className="font-medium">{name}</b> <span className="text-ink-soft">{place}</span>
-    </Link>
+    </BenchFrame>
   )
 }

@@ -2,7 +2,7 @@ import { href, Link } from 'react-router'
 import * as z from 'zod'
 import { findBenchLog, type LogEntry } from '../../benches/bench-log.server.ts'
 import { requireVisibleBench } from '../../benches/visible-benches.server.ts'
-import { PageFrame } from '../../components/page-frame.tsx'
+import { BenchFrame } from '../../components/bench-frame.tsx'
 import { databaseContext, personContext } from '../../context.ts'
 import type { Route } from './+types/log'
 
@@ -23,6 +23,7 @@ export async function loader({ request, params, context }: Route.LoaderArgs) {
   })
   return {
     bench: { id, name, place },
+    person: { id: person.id, role: person.role },
     page,
     entries: entries.slice(0, pageLength),
     hasOlder: entries.length > pageLength,
@@ -30,16 +31,10 @@ export async function loader({ request, params, context }: Route.LoaderArgs) {
 }
 
 export default function Log({ loaderData }: Route.ComponentProps) {
-  const { bench, page, entries, hasOlder } = loaderData
+  const { bench, person, page, entries, hasOlder } = loaderData
   const benchPage = href('/benches/:benchId', { benchId: bench.id })
   return (
-    <PageFrame
-      where={
-        <Link to={benchPage}>
-          <b className="font-medium">{bench.name}</b> <span className="text-ink-soft">{bench.place}</span>
-        </Link>
-      }
-    >
+    <BenchFrame bench={bench} person={person}>
       <title>{`Log · ${bench.name} · Coilside`}</title>
       <div className="grid max-w-6xl gap-4">
         <h1 className="text-xl font-bold">Log of {bench.name}</h1>
@@ -57,63 +52,59 @@ export default function Log({ loaderData }: Route.ComponentProps) {
           )}
         </nav>
       </div>
-    </PageFrame>
+    </BenchFrame>
   )
 }
 
 function Empty({ page, benchPage }: { page: number; benchPage: string }) {
+  if (page > 1) return <p className="text-ink-soft">Nothing older is noted.</p>
   return (
     <p className="text-ink-soft">
-      {page > 1 ? 'Nothing older is noted.' : 'Nothing has happened here yet. What is asked of this bench'}
-      {page > 1 ? null : (
-        <>
-          {' '}
-          and what it does is noted from the first command on.{' '}
-          <Link to={benchPage} className="link text-ink">
-            To the bench
-          </Link>
-        </>
-      )}
+      Nothing has happened here yet. What is asked of this bench and what it does is noted from the first
+      command on.{' '}
+      <Link to={benchPage} className="link text-ink">
+        To the bench
+      </Link>
     </p>
   )
 }
 
 const outcomeWords = { accepted: 'done', refused: 'refused', unanswered: 'no answer' } as const
 
+/** A table; on a phone each entry is a block of lines, since four columns would not fit. */
 function Entries({ entries }: { entries: LogEntry[] }) {
+  const cell = 'py-2 pr-6 align-top max-sm:block max-sm:p-0'
   return (
-    <div className="overflow-x-auto">
-      <table className="w-full min-w-xl border-collapse text-left">
-        <thead className="text-[12.5px] text-ink-soft">
-          <tr className="border-b border-edge">
-            <th className="py-2 pr-6 font-medium">When (UTC)</th>
-            <th className="py-2 pr-6 font-medium">Who</th>
-            <th className="py-2 pr-6 font-medium">What</th>
-            <th className="py-2 font-medium">Outcome</th>
+    <table className="w-full border-collapse text-left max-sm:block">
+      <thead className="text-[12.5px] text-ink-soft max-sm:sr-only">
+        <tr className="border-b border-edge">
+          <th className="py-2 pr-6 font-medium">When (UTC)</th>
+          <th className="py-2 pr-6 font-medium">Who</th>
+          <th className="py-2 pr-6 font-medium">What</th>
+          <th className="py-2 font-medium">Outcome</th>
+        </tr>
+      </thead>
+      <tbody className="max-sm:block">
+        {entries.map((entry) => (
+          <tr key={entry.id} className="border-b border-rule max-sm:block max-sm:py-2">
+            <td className={`${cell} whitespace-nowrap text-ink-soft`}>
+              <time dateTime={entry.at}>{entry.at.slice(0, 19).replace('T', ' ')}</time>
+            </td>
+            <td className={`${cell} whitespace-nowrap text-ink-soft`}>{entry.personName ?? 'the bench'}</td>
+            <td className={`${cell} w-full`}>
+              {entry.kind === 'trip' && <b className="tripped mr-2 px-1.5">Trip</b>}
+              {entry.sentence}
+            </td>
+            <td className={`${cell} whitespace-nowrap`}>{outcomeOf(entry)}</td>
           </tr>
-        </thead>
-        <tbody>
-          {entries.map((entry) => (
-            <tr key={entry.id} className="border-b border-rule align-top">
-              <td className="py-2 pr-6 whitespace-nowrap text-ink-soft">
-                <time dateTime={entry.at}>{entry.at.slice(0, 19).replace('T', ' ')}</time>
-              </td>
-              <td className="py-2 pr-6">{entry.personName ?? 'the bench'}</td>
-              <td className={entry.kind === 'trip' ? 'py-2 pr-6 font-bold text-trip' : 'py-2 pr-6'}>
-                {entry.kind === 'trip' && 'Trip: '}
-                {entry.sentence}
-              </td>
-              <td className="py-2 whitespace-nowrap">
-                {entry.source === 'bench'
-                  ? 'told by the bench'
-                  : entry.outcome
-                    ? outcomeWords[entry.outcome]
-                    : 'not noted'}
-              </td>
-            </tr>
-          ))}
-        </tbody>
-      </table>
-    </div>
+        ))}
+      </tbody>
+    </table>
   )
+}
+
+/** Only what was asked has an outcome; what the bench tells is one. */
+function outcomeOf({ source, outcome }: LogEntry): string | null {
+  if (source === 'bench') return null
+  return outcome ? outcomeWords[outcome] : 'not noted'
 }
