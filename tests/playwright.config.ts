@@ -8,7 +8,7 @@ export default defineConfig({
   retries: 0,
   timeout: 120_000,
   expect: { timeout: 10_000 },
-  reporter: [['list'], ['json']],
+  reporter: [['list'], ['json', { outputFile: '../test-results/browser.json' }]],
   use: {
     actionTimeout: 15_000,
     browserName: 'chromium',

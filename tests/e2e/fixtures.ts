@@ -9,7 +9,10 @@ import { type Site, startSite } from '#tests/support/site.ts'
 type Role = 'student' | 'instructor' | 'technician'
 type Fixtures = {
   /** A page signed in through the form as the demo's person of that role, with console errors failing the test. */
-  signInAs: (role: Role, options?: { path?: string; email?: string }) => Promise<Page>
+  signInAs: (
+    role: Role,
+    options?: { path?: string; email?: string; deviceScaleFactor?: number },
+  ) => Promise<Page>
 }
 
 export const test = base.extend<Fixtures, { site: Site }>({
@@ -26,8 +29,12 @@ export const test = base.extend<Fixtures, { site: Site }>({
   signInAs: async ({ browser, site }, use) => {
     const contexts: Awaited<ReturnType<typeof browser.newContext>>[] = []
     const faults: string[] = []
-    await use(async (role, { path = '/hall', email } = {}) => {
-      const context = await browser.newContext({ baseURL: site.url, viewport: { width: 1280, height: 900 } })
+    await use(async (role, { path = '/hall', email, deviceScaleFactor = 1 } = {}) => {
+      const context = await browser.newContext({
+        baseURL: site.url,
+        viewport: { width: 1280, height: 900 },
+        deviceScaleFactor,
+      })
       contexts.push(context)
       const page = await context.newPage()
       page.on('console', (message) => message.type() === 'error' && faults.push(message.text()))
