@@ -14,11 +14,13 @@ import { Logbook } from './logbook.tsx'
 import { edgesOf, readingWithEdges } from './logbook-rows.ts'
 import { RunHeader } from './run-header.tsx'
 import { Tube } from './tube.tsx'
+import { useFreshView } from './use-fresh-view.ts'
 
 /** The bench from top to bottom: the path of the energy, what needs a person now, tube and channels, the logbook. */
 export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControls: boolean }) {
   const { config } = view.bench
   const state = useBenchState(config.benchId)
+  useFreshView()
   const step =
     state &&
     nextStep({

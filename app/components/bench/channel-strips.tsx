@@ -2,7 +2,7 @@ import { LiveStrip } from '#app/charts/live-strip.tsx'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import type { Channel } from '#app/safety/types.ts'
-import { useLatest, useLink } from '#app/telemetry/telemetry.tsx'
+import { useDroppedSamples, useLatest, useLink } from '#app/telemetry/telemetry.tsx'
 import { fixed } from '../figures.ts'
 import { Quantity } from '../quantity.tsx'
 import { LastMinute } from './last-minute.tsx'
@@ -13,6 +13,7 @@ const spanSeconds = 60
 
 /** The channels that a reading rests on: figure, last minute, and whether each is settled and why not. */
 export function ChannelStrips({ config, state }: { config: BenchConfig; state: BenchState | null }) {
+  const dropped = useDroppedSamples()
   const rows: Row[] = [
     {
       channel: 'anodeVolts',
@@ -41,6 +42,11 @@ export function ChannelStrips({ config, state }: { config: BenchConfig; state: B
       {rows.map((row) => (
         <Strip key={row.channel} row={row} config={config} state={state} />
       ))}
+      {dropped > 0 && (
+        <p className="pt-1 text-[12.5px] text-caution">
+          {dropped} samples are not drawn: this page could not keep up. Nothing is missing from a capture.
+        </p>
+      )}
       <LastMinute benchId={config.benchId} rows={rows} />
     </div>
   )

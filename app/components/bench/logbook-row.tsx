@@ -33,6 +33,8 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
   const isEntry = !reading.struck && (isAsked || (isCurrent && !mine))
   const errors = fetcher.data && !fetcher.data.ok ? fetcher.data.errors : {}
   const label = reading.number
+  // On a real bench in a dark room the tube alone may glow.
+  const beam = view.bench.config.picturePath === null ? 'text-beam dark:text-ink' : 'text-beam'
 
   function readAgain() {
     setLeft(mine ? centimetres(mine.leftMetres) : '')
@@ -84,7 +86,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
         {isEntry ? field('right', right, setRight) : mine && centimetres(mine.rightMetres)}
       </td>
       <td className={cell}>{diameter !== null && centimetres(diameter)}</td>
-      <td className={`${cell} ${reading.struck ? '' : 'text-beam'}`}>
+      <td className={`${cell} ${reading.struck ? '' : beam}`}>
         {reading.result &&
           withUncertainty(reading.result.chargeToMass / 1e11, reading.result.standardUncertainty / 1e11)}
       </td>

@@ -1,4 +1,5 @@
-import { href, Link, useRouteLoaderData } from 'react-router'
+import { useEffect } from 'react'
+import { href, isRouteErrorResponse, Link, useRouteLoaderData } from 'react-router'
 import { loadBenchView } from '../../benches/bench-view.server.ts'
 import { BenchPage } from '../../components/bench/bench-page.tsx'
 import { MakeSafeButton } from '../../components/make-safe-button.tsx'
@@ -13,8 +14,27 @@ export async function loader({ params, context }: Route.LoaderArgs) {
   return loadBenchView(context.get(databaseContext), { benchId: params.benchId, person })
 }
 
+const lastViews = new Map<string, Awaited<ReturnType<typeof loader>>>()
+
+/** While the web application is silent the page keeps what it last knew; the live values come from the bridge. */
+export async function clientLoader({ params, serverLoader }: Route.ClientLoaderArgs) {
+  try {
+    const view = await serverLoader()
+    lastViews.set(params.benchId, view)
+    return view
+  } catch (error) {
+    const known = lastViews.get(params.benchId)
+    const isMeant = error instanceof Response || (isRouteErrorResponse(error) && error.status < 500)
+    if (!known || isMeant) throw error
+    return known
+  }
+}
+
 export default function Bench({ loaderData: view }: Route.ComponentProps) {
   const socketUrl = useRouteLoaderData<typeof rootLoader>('root')?.socketUrl
+  useEffect(() => {
+    lastViews.set(view.bench.id, view)
+  }, [view])
   if (!socketUrl) return null
   return (
     <Telemetry key={view.bench.id} socketUrl={socketUrl} benchId={view.bench.id}>

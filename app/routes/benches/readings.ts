@@ -1,4 +1,5 @@
 import { data, href, redirect } from 'react-router'
+import { answerAlways } from '../../benches/answer-always.ts'
 import { databaseContext, personContext } from '../../context.ts'
 import { captureReading } from '../../runs/capture.server.ts'
 import type { Route } from './+types/readings'
@@ -13,3 +14,5 @@ export async function action({ params, context }: Route.ActionArgs) {
   })
   return data(reply, { status })
 }
+
+export const clientAction = ({ serverAction }: Route.ClientActionArgs) => answerAlways({ serverAction })

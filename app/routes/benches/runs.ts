@@ -1,5 +1,6 @@
 import { data, href, redirect } from 'react-router'
 import { done } from '../../benches/action-reply.ts'
+import { answerAlways } from '../../benches/answer-always.ts'
 import { requireVisibleBench } from '../../benches/visible-benches.server.ts'
 import { databaseContext, personContext } from '../../context.ts'
 import { startRun } from '../../runs/runs.server.ts'
@@ -15,3 +16,5 @@ export async function action({ params, context }: Route.ActionArgs) {
   await startRun(db, { benchId: bench.id, personId: person.id })
   return data(done('A new run is begun. The readings before it are kept.'))
 }
+
+export const clientAction = ({ serverAction }: Route.ClientActionArgs) => answerAlways({ serverAction })

@@ -1,4 +1,5 @@
 import { data, href, redirect } from 'react-router'
+import { answerAlways } from '../../benches/answer-always.ts'
 import { databaseContext, personContext } from '../../context.ts'
 import { strikeReading } from '../../runs/strike.server.ts'
 import type { Route } from './+types/strike'
@@ -14,3 +15,5 @@ export async function action({ request, params, context }: Route.ActionArgs) {
   })
   return data(reply, { status })
 }
+
+export const clientAction = ({ serverAction }: Route.ClientActionArgs) => answerAlways({ serverAction })
