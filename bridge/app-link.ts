@@ -69,11 +69,7 @@ export function startAppLink(options: AppLinkOptions): AppLink {
     if (batch.events.length === 0 && batch.summaries.length === 0) return false
     const body: SpoolBatch = { bridgeId: options.bridgeId, ...batch }
     const reply = spoolReplySchema.parse(await call('POST', '/api/bridge/spool', JSON.stringify(body)))
-    await options.spool.confirm({
-      // Never more than was sent: what the app confirms beyond it is not in this spool.
-      event: Math.min(reply.confirmedEvent, batch.events.at(-1)?.sequence ?? 0),
-      summary: Math.min(reply.confirmedSummary, batch.summaries.at(-1)?.sequence ?? 0),
-    })
+    await options.spool.confirm({ event: reply.confirmedEvent, summary: reply.confirmedSummary })
     return batch.events.length === batchLimits.events || batch.summaries.length === batchLimits.summaries
   }
 

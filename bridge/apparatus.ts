@@ -114,8 +114,7 @@ export class Apparatus {
     this.#recorder.add(this.#options.wallOf(at), values)
     this.#options.onSample()
     const { next } = this.ring
-    if (at - this.ring.time(this.#sentUpTo) >= batchSeconds || next - this.#sentUpTo === 1) {
-      if (this.hertz > 1 / batchSeconds && next - this.#sentUpTo === 1) return
+    if (this.hertz <= 1 / batchSeconds || at - this.ring.time(this.#sentUpTo) >= batchSeconds) {
       this.#options.onSamples(this.ring.message(this.config.benchId, this.#sentUpTo, next))
       this.#sentUpTo = next
     }

@@ -109,9 +109,11 @@ async function switchHeater(bench: Bench, outputs: Outputs, on: boolean): Promis
     await supply?.switchOutput('anode', false, { urgent: true })
     const { coils } = outputs.views
     if (coils.on) await outputs.set('coils', coils.asked)
+    await outputs.switchHeater(false)
+    return 'Anode off, heater off.'
   }
   await outputs.switchHeater(false)
-  return 'Anode and heater off.'
+  return 'Heater off.'
 }
 
 function setPolarity(bench: Bench, actor: Actor, polarity: 1 | -1): string {

@@ -125,7 +125,7 @@ export class Guard {
         break
       }
       case 'shutdown':
-        void this.#takeDown(happening.cause, happening.heater ? everything : ['anode', 'coils'], 'trip')
+        void this.#takeDown(happening.cause, happening.heater ? everything : ['anode', 'coils'], 'command')
         break
       case 'interlock':
         report({
@@ -146,7 +146,7 @@ export class Guard {
   async #takeDown(
     cause: string,
     order: readonly Output[],
-    kind: 'trip' | 'make-safe',
+    kind: 'command' | 'make-safe',
     actor?: Pick<Actor, 'personId' | 'name'>,
   ): Promise<string> {
     const { view, wallOf, report } = this.#options

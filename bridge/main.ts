@@ -52,11 +52,15 @@ const bridge = await createBridge({
 })
 log.info({ address: bridge.address }, 'Bridge listening')
 
-for (const signal of ['SIGTERM', 'SIGINT'] as const) {
-  process.once(signal, () => {
-    bridge.close().then(
-      () => process.exit(0),
-      () => process.exit(1),
-    )
-  })
+const end = (exitCode: number) => {
+  bridge.close().then(
+    () => process.exit(exitCode),
+    () => process.exit(1),
+  )
 }
+for (const signal of ['SIGTERM', 'SIGINT'] as const) process.once(signal, () => end(0))
+// A bridge that does not know what it is doing leaves nothing switched on.
+process.once('uncaughtException', (error) => {
+  log.fatal({ error: error.stack ?? String(error) }, 'The bridge failed and makes safe')
+  end(1)
+})

@@ -195,16 +195,12 @@ export class Outputs {
     })
   }
 
+  /** Marked before it is sent: a setpoint that comes meanwhile switches on again, behind this in the line's queue. */
   async #end(output: 'anode' | 'coils'): Promise<void> {
-    const generation = this.#generation
-    try {
-      await this.#options.instruments.supply.switchOutput(output, false)
-      const view = this.views[output]
-      if (generation === this.#generation && view.asked === 0)
-        this.#change(output, { on: false, commanded: 0 })
-    } catch {
-      // It stays at zero and on; the next command or the line's own fate settles it.
-    }
+    this.#change(output, { on: false, commanded: 0 })
+    await this.#options.instruments.supply.switchOutput(output, false).catch(() => {
+      // It stays on at zero; should it carry anything, the read-back finds it.
+    })
   }
 
   #isAtZero(): boolean {

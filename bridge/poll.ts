@@ -8,7 +8,7 @@ import type { InterlockReading, SupplyReading } from './instruments/types.ts'
 /** The bench is watched at least this fast, whatever rate it records with: the detection times rest on it. */
 export const leastHertz = 10
 const interlockSeconds = 0.05
-/** An answer that takes longer misses its sample, which then says that there was none. */
+/** An answer that takes longer misses its sample and goes with the next one. */
 const longestRoundSeconds = 0.1
 
 export const noValues = (): ChannelValues =>
@@ -28,20 +28,16 @@ export function startPolling(options: PollOptions): () => void {
   const { instruments, clock } = options
   const period = 1 / options.hertz
   const roundSeconds = Math.max(period, longestRoundSeconds)
-  const supply = oneAtATime(() => instruments.supply.measure())
-  const anodeMeter = oneAtATime(() => instruments.anodeMeter.measure())
-  const coilMeter = oneAtATime(() => instruments.coilMeter.measure())
-  const interlock = oneAtATime(() => instruments.interlock.measure())
+  const supply = answersTo(() => instruments.supply.measure())
+  const anodeMeter = answersTo(() => instruments.anodeMeter.measure())
+  const coilMeter = answersTo(() => instruments.coilMeter.measure())
+  const interlock = answersTo(() => instruments.interlock.measure())
   let isStopped = false
   let published: Promise<void> = Promise.resolve()
 
   const round = () => {
-    const at = clock.now()
-    const readings = Promise.all([
-      within(roundSeconds, supply(), null),
-      within(roundSeconds, anodeMeter(), null),
-      within(roundSeconds, coilMeter(), null),
-    ])
+    const at = rounded(clock.now(), 4)
+    const readings = Promise.all([supply(roundSeconds), anodeMeter(roundSeconds), coilMeter(roundSeconds)])
     // A slow round must not be overtaken by the next one.
     published = Promise.all([published, readings]).then(([, [supplyReading, anodeVolts, coilAmps]]) => {
       if (isStopped) return
@@ -49,7 +45,7 @@ export function startPolling(options: PollOptions): () => void {
     })
   }
   const askInterlock = async () => {
-    const reading = await interlock()
+    const reading = await interlock(interlockSeconds)
     if (reading !== null && !isStopped) options.onInterlock(reading, clock.now())
   }
   const timers = [
@@ -62,20 +58,25 @@ export function startPolling(options: PollOptions): () => void {
   }
 }
 
-/** The question as one that is not put again before it is answered; null meanwhile, and when it fails. */
-function oneAtATime<T>(ask: () => Promise<T | null>): () => Promise<T | null> {
-  let isAsking = false
-  return async () => {
-    if (isAsking) return null
-    isAsking = true
-    try {
-      return await ask()
-    } catch {
+/**
+ * Puts a question, and gives its answer once: to the round that asked, or, when it came late, to the next one. Null
+ * for a round without an answer of its own; an old answer is never repeated.
+ */
+function answersTo<T>(ask: () => Promise<T | null>): (seconds: number) => Promise<T | null> {
+  let asking: Promise<void> | null = null
+  const answers: (T | null)[] = []
+  return async (seconds) => {
+    if (answers.length === 0) {
       // A line that does not answer is told by its status; here it is a sample without a reading.
-      return null
-    } finally {
-      isAsking = false
+      asking ??= ask()
+        .catch(() => null)
+        .then((value) => {
+          answers.push(value)
+          asking = null
+        })
+      await within(seconds, asking, undefined)
     }
+    return answers.shift() ?? null
   }
 }
 
@@ -88,6 +89,7 @@ function valuesOf(
 ): ChannelValues {
   const coilVolts = supply?.coils.volts ?? null
   const coilSupplyAmps = supply?.coils.amps ?? null
+  const celsius = thermometer.read(at, coilVolts, coilSupplyAmps)
   return {
     heaterVolts: supply?.heater.volts ?? null,
     heaterAmps: supply?.heater.amps ?? null,
@@ -97,6 +99,9 @@ function valuesOf(
     coilAmps,
     coilSupplyAmps,
     coilVolts,
-    coilCelsius: thermometer.read(at, coilVolts, coilSupplyAmps),
+    coilCelsius: celsius === null ? null : rounded(celsius, 3),
   }
 }
+
+/** Fewer digits make shorter messages. */
+const rounded = (value: number, decimals: number): number => Number(value.toFixed(decimals))

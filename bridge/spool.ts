@@ -13,6 +13,8 @@ import type { UnnumberedSummary } from './recorder.ts'
 const lockSeconds = 2
 const schema = [
   'PRAGMA journal_mode = WAL',
+  // With a log ahead, what was written outlives a killed process; only a power cut may take the last of it.
+  'PRAGMA synchronous = NORMAL',
   'CREATE TABLE IF NOT EXISTS events (sequence INTEGER PRIMARY KEY AUTOINCREMENT, body TEXT NOT NULL)',
   'CREATE TABLE IF NOT EXISTS summaries (sequence INTEGER PRIMARY KEY AUTOINCREMENT, body TEXT NOT NULL)',
   'CREATE TABLE IF NOT EXISTS kept (name TEXT PRIMARY KEY, body TEXT NOT NULL)',
@@ -26,6 +28,7 @@ export type Spool = {
   addSummaries(summaries: readonly UnnumberedSummary[]): Promise<void>
   /** The oldest that are not confirmed. */
   batch(limits: { events: number; summaries: number }): Promise<Pick<SpoolBatch, 'events' | 'summaries'>>
+  /** `upTo` as the app says it, for each sequence. */
   confirm(upTo: { event: number; summary: number }): Promise<void>
   configuration(): Promise<BenchConfig[] | null>
   keepConfiguration(benches: readonly BenchConfig[]): Promise<void>
@@ -66,6 +69,30 @@ export async function openSpool(url: string): Promise<Spool> {
       sequence: Number(sequence),
     }))
   }
+  /** What is confirmed goes. A number that was never given here is of a former spool: numbering goes on behind it. */
+  const confirmIn = async (table: 'events' | 'summaries', upTo: number) => {
+    const given = await client.execute({
+      sql: 'SELECT seq FROM sqlite_sequence WHERE name = ?',
+      args: [table],
+    })
+    const highest = Number(given.rows[0]?.seq ?? 0)
+    if (upTo <= highest) {
+      await client.execute({ sql: `DELETE FROM ${table} WHERE sequence <= ?`, args: [upTo] })
+      return
+    }
+    const args = [upTo, table]
+    await client.batch(
+      [
+        // In two steps, since numbers must not meet on the way.
+        { sql: `UPDATE ${table} SET sequence = -sequence`, args: [] },
+        { sql: `UPDATE ${table} SET sequence = ? - sequence`, args: [upTo] },
+        highest === 0
+          ? { sql: 'INSERT INTO sqlite_sequence (seq, name) VALUES (?, ?)', args }
+          : { sql: 'UPDATE sqlite_sequence SET seq = seq + ? WHERE name = ?', args },
+      ],
+      'write',
+    )
+  }
   return {
     addEvents: (events) =>
       inTurn(async () => {
@@ -83,13 +110,8 @@ export async function openSpool(url: string): Promise<Spool> {
       })),
     confirm: ({ event, summary }) =>
       inTurn(async () => {
-        await client.batch(
-          [
-            { sql: 'DELETE FROM events WHERE sequence <= ?', args: [event] },
-            { sql: 'DELETE FROM summaries WHERE sequence <= ?', args: [summary] },
-          ],
-          'write',
-        )
+        await confirmIn('events', event)
+        await confirmIn('summaries', summary)
       }),
     configuration: () =>
       inTurn(async () => {

@@ -4,7 +4,7 @@ import type { FromBridge } from '#app/protocol/messages.ts'
 import { type BusMessage, benchIdOf } from './bus.ts'
 
 /** Above this a watcher loses samples, pictures and states; the next state tells it all of that again. */
-const slowBytes = 128 * 1024
+const slowBytes = 512 * 1024
 /** Above this it is given up: it would have to hold all events that are still to come. */
 const hopelessBytes = 4 * 1024 * 1024
 

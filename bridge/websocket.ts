@@ -59,7 +59,12 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
       refuseUpgrade(socket, 403, 'Forbidden', 'This origin may not connect.')
       return
     }
-    const checked = ticketOf(new URL(request.url ?? '/', 'http://bridge'), options)
+    const url = new URL(request.url ?? '/', 'http://bridge')
+    if (url.pathname !== telemetryPath) {
+      refuseUpgrade(socket, 404, 'Not Found', 'There is nothing here.')
+      return
+    }
+    const checked = ticketOf(url, options)
     if (!checked.ok) {
       refuseUpgrade(socket, 401, 'Unauthorized', checked.reason)
       return
@@ -170,7 +175,6 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
 }
 
 function ticketOf(url: URL, { secret, revokedAt }: TelemetryOptions): ReturnType<typeof readTicket> {
-  if (url.pathname !== telemetryPath) return { ok: false, reason: 'There is nothing here.' }
   for (const use of ['ticket', 'resume'] as const) {
     const text = url.searchParams.get(use)
     if (text !== null) return readTicket(text, { secret, use, now: wallNow(), revokedAt })

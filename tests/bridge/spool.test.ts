@@ -1,3 +1,6 @@
+import { mkdtempSync, rmSync } from 'node:fs'
+import { tmpdir } from 'node:os'
+import { join } from 'node:path'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import {
   accept,
@@ -111,5 +114,24 @@ describe('The spool', () => {
     expect(Math.min(...page.events().map(({ sequence }) => sequence))).toBeGreaterThan(highest)
     expectNoGap(site.receiver.events.keys())
     expect(site.receiver.failures).toEqual([])
+  })
+
+  it('that was lost goes on behind the numbers that the app has, and overwrites nothing', async () => {
+    await makeEvents(2)
+    await everyEventArrives()
+    const before = new Map(site.receiver.events)
+    await page.close()
+    const directory = mkdtempSync(join(tmpdir(), 'bridge-spool-'))
+    await site.restart({ spoolUrl: `file:${join(directory, 'spool.db')}` })
+    page = await openSocket(site.address, { ticket: ticketOf(people.technician) })
+    await waitUntilOff(page)
+    await makeEvents(3)
+    // The first batch after the loss bears numbers that the app knows, and must not count as taken.
+    await until('the events', () => [...site.receiver.events.keys()].length >= before.size + 6)
+    for (const [sequence, event] of before) expect(site.receiver.events.get(sequence)).toEqual(event)
+    expectNoGap(site.receiver.events.keys())
+    await site.bridge.close()
+    rmSync(directory, { recursive: true, force: true })
+    await site.restart()
   })
 })

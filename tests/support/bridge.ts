@@ -263,7 +263,7 @@ export async function startReceiver(benches: BenchConfig[], port = 0) {
       const had = events.get(event.sequence)
       if (had && JSON.stringify(had) !== JSON.stringify(event))
         failures.push(`Event ${event.sequence} came with two contents`)
-      events.set(event.sequence, event)
+      if (!had) events.set(event.sequence, event)
     }
     for (const summary of batch.summaries) summaries.set(summary.sequence, summary)
     if (behaviour.mode === 'store-and-drop') {
