@@ -28,4 +28,6 @@ export default [
   route('api/health', 'routes/api/health.ts'),
   route('api/bridge/configuration', 'routes/api/bridge-configuration.ts'),
   route('api/bridge/spool', 'routes/api/bridge-spool.ts'),
+
+  route('*', 'routes/not-found.tsx'),
 ] satisfies RouteConfig

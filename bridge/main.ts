@@ -7,25 +7,33 @@ import { createOpenPort } from './instruments/open-port.ts'
 
 const demoSecret = 'a-bridge-secret-for-the-demo-only'
 
-const environmentSchema = z.object({
-  BRIDGE_HOST: z.string().min(1).default('127.0.0.1'),
-  BRIDGE_PORT: z.coerce.number().int().min(0).max(65535).default(7400),
-  BRIDGE_SECRET: z.string().min(16).default(demoSecret),
-  BRIDGE_ID: z.string().min(1).default('room-1'),
-  APP_URL: z.url().default('http://127.0.0.1:3000'),
-  ALLOWED_ORIGINS: z
-    .string()
-    .default('http://127.0.0.1:3000,http://localhost:3000')
-    .transform((list) =>
-      list
-        .split(',')
-        .map((origin) => origin.trim())
-        .filter((origin) => origin !== ''),
-    ),
-  SPOOL_URL: z.string().min(1).default('file:data/bridge-spool.db'),
-  SIMULATOR_LINK: z.string().min(1).optional(),
-  LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
-})
+const environmentSchema = z
+  .object({
+    NODE_ENV: z.enum(['development', 'production', 'test']).default('development'),
+    /** A demo site runs on the default secret. */
+    DEMO: z.stringbool().default(false),
+    BRIDGE_HOST: z.string().min(1).default('127.0.0.1'),
+    BRIDGE_PORT: z.coerce.number().int().min(0).max(65535).default(4310),
+    BRIDGE_SECRET: z.string().min(16).default(demoSecret),
+    BRIDGE_ID: z.string().min(1).default('room-1'),
+    APP_URL: z.url().default('http://127.0.0.1:3000'),
+    ALLOWED_ORIGINS: z
+      .string()
+      .default('http://127.0.0.1:3000,http://localhost:3000')
+      .transform((list) =>
+        list
+          .split(',')
+          .map((origin) => origin.trim())
+          .filter((origin) => origin !== ''),
+      ),
+    SPOOL_URL: z.string().min(1).default('file:.data/bridge-spool.db'),
+    SIMULATOR_LINK: z.string().min(1).optional(),
+    LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error', 'silent']).default('info'),
+  })
+  .refine((env) => env.DEMO || env.NODE_ENV !== 'production' || env.BRIDGE_SECRET !== demoSecret, {
+    path: ['BRIDGE_SECRET'],
+    message: 'is the default one: set your own before you run a bridge in production',
+  })
 
 const parsed = environmentSchema.safeParse(process.env)
 if (!parsed.success) {

@@ -122,6 +122,8 @@ const table: Row[] = [
   ['GET', '/api/health', [200, 200, 200, 200, 200]],
   ['GET', '/api/bridge/configuration', [401, 401, 401, 401, 401]],
   ['POST', '/api/bridge/spool', [401, 401, 401, 401, 401]],
+  ['GET', '/*', [404, 404, 404, 404, 404]],
+  ['POST', '/*', [405, 405, 405, 405, 405]],
 ]
 
 const titleOf = ([method, route, , fields]: Row) => [method, route, fields?.kind ?? ''].join(' ').trim()

@@ -2,6 +2,7 @@ import { existsSync } from 'node:fs'
 import { startProcess } from '#tests/support/processes.ts'
 
 /** Production: the app and this room's bridge from the build. Each refuses to start on the default secrets. */
+if (existsSync('.env')) process.loadEnvFile('.env')
 if (!existsSync('build/server/index.js')) throw new Error('Run `npm run build` first.')
 
 const env = { NODE_ENV: 'production' }

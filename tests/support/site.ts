@@ -22,6 +22,7 @@ type Part = (typeof parts)[number]
 export type Site = {
   url: string
   bridgeUrl: string
+  databaseUrl: string
   simulatorTest: { host: string; port: number }
   mail: MailCatcher
   processes: Record<Part, Process>
@@ -51,13 +52,14 @@ export async function startSite({
   const mail = await startMailCatcher(mailPort)
   const url = `http://127.0.0.1:${app}`
   const bridgeUrl = `http://127.0.0.1:${bridge}`
+  const databaseUrl = `file:${join(dataDir, 'coilside.db')}`
   const environment: Record<string, string> = {
     NODE_ENV: isDev ? 'development' : 'production',
     DEMO: '1',
     HOST: host,
     PORT: String(app),
     SITE_URL: url,
-    DATABASE_URL: `file:${join(dataDir, 'coilside.db')}`,
+    DATABASE_URL: databaseUrl,
     BRIDGE_URL: bridgeUrl,
     SMTP_URL: `smtp://127.0.0.1:${mail.port}`,
     BRIDGE_ID: 'room-1',
@@ -117,6 +119,7 @@ export async function startSite({
   const site: Site = {
     url,
     bridgeUrl,
+    databaseUrl,
     simulatorTest: { host: '127.0.0.1', port: test },
     mail,
     processes,
