@@ -165,9 +165,9 @@ export function warningsOf(
   if (config === null) return warnings
   const { limits } = config
   if (machine.phase === 'lost') {
-    const last =
-      anodeMeasured === null ? 'No anode voltage has been measured' : anodeKnowledge(anodeMeasured, view.at)
-    warnings.push(`The anode's voltage is unknown: treat the tube as live. Last known: ${last}.`)
+    warnings.push(
+      `Not every instrument answers: treat the tube as live. Anode: ${anodeKnowledge(anodeMeasured, view.at)}.`,
+    )
   }
   const left = values.coilCelsius === null ? null : limits.coilCelsius - values.coilCelsius
   if (left !== null && left <= warningKelvin && values.coilCelsius !== null) {

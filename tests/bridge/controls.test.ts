@@ -91,6 +91,7 @@ describe('The controls', () => {
     await bringToLive(site, page, people.student)
     const other = await openSocket(site.address, { ticket: ticketOf(people.instructor) })
     other.stay()
+    await until('the anode is up', () => site.terminal().anodeVolts > 190)
     await accept(site.address, people.instructor, { kind: 'take-over' })
     expect(site.terminal().anodeVolts).toBeGreaterThan(190)
     expect(await code(people.student, { kind: 'set-anode', volts: 100 })).toBe('not-at-the-controls')

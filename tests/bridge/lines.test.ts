@@ -46,7 +46,7 @@ describe('A line that is lost', () => {
     const lost = await waitForState(page, ({ phase }) => phase === 'lost')
     expect(lost.ports.supply).toBe('lost')
     expect(lost.trip?.kind).toBe('lost-line')
-    expect(lost.warnings.join()).toMatch(/unknown: treat the tube as live/)
+    expect(lost.warnings.join()).toMatch(/treat the tube as live/)
     const from = page.messages.length
     await new Promise((resolve) => setTimeout(resolve, 700))
     const values = heard('anodeSupplyVolts', from)
