@@ -20,7 +20,7 @@ type Props = {
   text: string
 }
 
-const height = 72
+const height = 78
 const minimumSeconds = 1 / 30
 
 /** One channel over time, drawn from the ring buffer outside React. */
@@ -53,7 +53,8 @@ export function LiveStrip({ benchId, channel, spanSeconds, windowSeconds, leastR
         axes: [
           {
             ...axis,
-            size: 20,
+            size: 24,
+            gap: 8,
             space: 90,
             grid: { show: false },
             values: (_, ticks) => ticks.map((t) => (t ? `${-t} s` : 'now')),

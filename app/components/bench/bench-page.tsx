@@ -45,7 +45,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
       )}
       <Banners view={view} state={state} />
       {step && <BringUpGuide step={step} benchId={config.benchId} />}
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[minmax(0,420px)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,560px)_minmax(0,1fr)]">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[minmax(0,420px)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,480px)_minmax(0,1fr)]">
         <Tube
           benchId={config.benchId}
           config={config}

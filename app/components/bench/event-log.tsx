@@ -1,6 +1,7 @@
 import { href, Link } from 'react-router'
 import type { BenchView } from '#app/benches/bench-view.server.ts'
 import { useEvents } from '#app/telemetry/telemetry.tsx'
+import { LocalTime } from '../local-time.tsx'
 
 const shown = 8
 
@@ -31,9 +32,7 @@ export function EventLog({ view }: { view: BenchView }) {
       <ol className="text-[12.5px]">
         {lines.map((line) => (
           <li key={line.key} className="flex gap-3 border-b border-rule py-1">
-            <time dateTime={line.at} className="text-ink-soft">
-              {line.at.slice(11, 19)}
-            </time>
+            <LocalTime iso={line.at} parts="time" className="text-ink-soft" />
             <span className="min-w-0">
               {line.sentence}
               {line.personName && <span className="text-ink-soft"> {line.personName}</span>}

@@ -14,7 +14,7 @@ export function Logbook({ view }: { view: BenchView }) {
       </p>
     )
   return (
-    <section aria-label="Readings" className="overflow-x-auto">
+    <section aria-label="Readings" className="relative overflow-x-auto">
       <table className="w-full border-collapse">
         <caption className="sr-only">Readings of this run</caption>
         <thead>

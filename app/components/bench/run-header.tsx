@@ -2,6 +2,7 @@ import { href, useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
 import type { BenchView } from '#app/benches/bench-view.server.ts'
 import { AnswerLine } from '../answer-line.tsx'
+import { LocalTime } from '../local-time.tsx'
 
 /** Which run the readings below belong to, and the button that begins another. */
 export function RunHeader({ view }: { view: BenchView }) {
@@ -14,7 +15,7 @@ export function RunHeader({ view }: { view: BenchView }) {
           <>
             Run of {run.by}{' '}
             <span className="font-normal text-ink-soft">
-              since <time dateTime={run.startedAt}>{shortTime(run.startedAt)}</time>
+              since <LocalTime iso={run.startedAt} parts="date and time" />
             </span>
           </>
         ) : (
@@ -31,9 +32,4 @@ export function RunHeader({ view }: { view: BenchView }) {
       </div>
     </header>
   )
-}
-
-/** '2026-12-01 14:05' in UTC, alike on server and browser. */
-export function shortTime(iso: string): string {
-  return `${iso.slice(0, 10)} ${iso.slice(11, 16)} UTC`
 }
