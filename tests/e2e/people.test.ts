@@ -39,7 +39,7 @@ test('Two students read the same beam, a reading is struck with a reason, and th
 
   await test.step('the partner cannot take the controls before the cautions are acknowledged', async () => {
     await student.getByRole('button', { name: 'Release the controls' }).click()
-    await expect(student.getByText('nobody')).toBeVisible()
+    await expect(student.getByText('at the controls: nobody')).toBeVisible()
     await partner.getByRole('button', { name: 'Take the controls' }).click()
     await expect(partner.getByText(/has not acknowledged the cautions/).first()).toBeVisible()
     await takeControls(student)

@@ -61,9 +61,10 @@ function LinkBanner() {
         </>
       ) : (
         <>
-          <b>The link to the bridge is lost.</b> {link.reason ? `${link.reason} ` : ''}The figures below are
-          old: treat the bench as live. The bridge keeps its limits and interlocks. Trying again; make safe
-          still works.
+          <b>Voltage unknown: treat as live.</b> The link to the bridge is lost{' '}
+          {link.reason ? `(${link.reason}) ` : ''}and the figures below are old. Make safe is still tried in
+          every way that is left; the emergency stop needs no link. Trying again. If this lasts, tell the
+          technician: the bridge is down, or does not accept this page.
         </>
       )}
     </Hatched>
