@@ -55,7 +55,7 @@ test('Two students read the same beam, a reading is struck with a reason, and th
       student
         .getByRole('dialog')
         .getByRole('alert')
-        .filter({ hasText: /reason/i }),
+        .filter({ hasText: /why this reading is struck/i }),
     ).toBeVisible()
     await student.getByLabel('Reason').fill('left edge read off the inner side')
     await student.getByRole('button', { name: 'Strike it' }).click()
@@ -64,6 +64,9 @@ test('Two students read the same beam, a reading is struck with a reason, and th
   })
 
   await test.step('the instructor takes over, and the student is told and cannot set any longer', async () => {
+    await warmUp(student)
+    await set(student, { volts: 150 })
+    await expectTerminal(site, benchId, 'live')
     const instructor = await signInAs('instructor', { path: `/benches/${benchId}` })
     await instructor.getByRole('button', { name: 'Take over' }).click()
     await instructor.getByRole('button', { name: 'Take over the controls' }).click()
