@@ -5,7 +5,8 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { createInterface } from 'node:readline'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
-import { bridgeSecret, origin, quickBench, type Receiver, startReceiver } from './bridge.ts'
+import { bridgeSecret, origin, quickBench } from './bridge.ts'
+import { type Receiver, startReceiver } from './bridge-receiver.ts'
 import { freePort, type Process, startProcess, until } from './processes.ts'
 
 export type TestSocket = {

@@ -1,21 +1,12 @@
-import { createHmac, randomUUID } from 'node:crypto'
+import { createHmac } from 'node:crypto'
 import { mkdtempSync, rmSync } from 'node:fs'
-import { createServer } from 'node:http'
-import type { AddressInfo } from 'node:net'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import pino from 'pino'
 import { WebSocket } from 'ws'
 import { demoBenches } from '#app/db/demo-benches.ts'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
-import {
-  type Command,
-  type CommandReply,
-  commandReplySchema,
-  type SpoolBatch,
-  spoolBatchSchema,
-  type Ticket,
-} from '#app/protocol/commands.ts'
+import { type Command, type CommandReply, commandReplySchema, type Ticket } from '#app/protocol/commands.ts'
 import {
   type BenchEvent,
   type BenchState,
@@ -23,15 +14,17 @@ import {
   type FromBrowser,
   fromBridgeSchema,
 } from '#app/protocol/messages.ts'
-import { requestText, signatureHeaders } from '#app/protocol/signing.ts'
 import type { Actor } from '#app/safety/types.ts'
 import { type Bridge, type BridgeOptions, createBridge } from '#bridge/bridge.ts'
 import { createOpenPort } from '#bridge/instruments/open-port.ts'
 import { demoScenario } from '#bridge/simulator/scenario.ts'
 import { createSimulator, type Simulator } from '#bridge/simulator/simulator.ts'
+import { type Receiver, startReceiver } from './bridge-receiver.ts'
+import { bridgeSecret, sign } from './bridge-signing.ts'
 import { until } from './processes.ts'
 
-export const bridgeSecret = 'a-secret-of-the-bridge-tests'
+export { bridgeSecret, sign }
+
 export const origin = 'http://127.0.0.1:3999'
 
 const person = (personId: string, name: string, role: Actor['role']): Actor => ({
@@ -62,22 +55,6 @@ export function quickBench(changes: Partial<BenchConfig['limits']> = {}, benchId
       coilAmpsPerSecond: 4,
       ...changes,
     },
-  }
-}
-
-/** Signs as the app does: by the text agreed in app/protocol/signing.ts and nothing of the bridge's own. */
-export function sign(
-  method: string,
-  path: string,
-  body: string,
-  { secret = bridgeSecret, time = Date.now() / 1000, nonce = randomUUID() as string } = {},
-): Record<string, string> {
-  const text = requestText({ method, path, time: String(time), nonce, body })
-  return {
-    'content-type': 'application/json',
-    [signatureHeaders.time]: String(time),
-    [signatureHeaders.nonce]: nonce,
-    [signatureHeaders.signature]: createHmac('sha256', secret).update(text).digest('hex'),
   }
 }
 
@@ -222,71 +199,6 @@ export function waitForState(
     throw new Error(`${String(error)}; the last state was ${JSON.stringify(page.state(benchId))}`)
   })
 }
-
-/** A real HTTP server that answers the bridge as the app does: it ignores what it has and confirms up to the first gap. */
-export async function startReceiver(benches: BenchConfig[], port = 0) {
-  const events = new Map<number, BenchEvent>()
-  const summaries = new Map<number, SpoolBatch['summaries'][number]>()
-  const failures: string[] = []
-  /** What becomes of the next batches: stored and confirmed, stored with the answer lost, or not stored at all. */
-  const behaviour: { mode: 'confirm' | 'store-and-drop' | 'drop' } = { mode: 'confirm' }
-  const upToGap = (numbers: { has(sequence: number): boolean }) => {
-    let last = 0
-    while (numbers.has(last + 1)) last++
-    return last
-  }
-  const server = createServer(async (request, response) => {
-    const parts: Buffer[] = []
-    for await (const part of request as AsyncIterable<Buffer>) parts.push(part)
-    const body = Buffer.concat(parts).toString()
-    const path = request.url ?? ''
-    const header = (name: string) => String(request.headers[name] ?? '')
-    const wanted = sign(request.method ?? '', path, body, {
-      time: header(signatureHeaders.time) as unknown as number,
-      nonce: header(signatureHeaders.nonce),
-    })
-    if (wanted[signatureHeaders.signature] !== header(signatureHeaders.signature)) {
-      failures.push(`${path} was not signed`)
-      response.writeHead(401).end('{}')
-      return
-    }
-    if (path === '/api/bridge/configuration') {
-      response.end(JSON.stringify({ benches }))
-      return
-    }
-    if (behaviour.mode === 'drop') {
-      request.socket.destroy()
-      return
-    }
-    const batch = spoolBatchSchema.parse(JSON.parse(body))
-    for (const event of batch.events) {
-      const had = events.get(event.sequence)
-      if (had && JSON.stringify(had) !== JSON.stringify(event))
-        failures.push(`Event ${event.sequence} came with two contents`)
-      if (!had) events.set(event.sequence, event)
-    }
-    for (const summary of batch.summaries) summaries.set(summary.sequence, summary)
-    if (behaviour.mode === 'store-and-drop') {
-      request.socket.destroy()
-      return
-    }
-    response.end(JSON.stringify({ confirmedEvent: upToGap(events), confirmedSummary: upToGap(summaries) }))
-  })
-  await new Promise<void>((resolve) => server.listen(port, '127.0.0.1', resolve))
-  return {
-    url: `http://127.0.0.1:${(server.address() as AddressInfo).port}`,
-    events,
-    summaries,
-    failures,
-    behaviour,
-    close: () =>
-      new Promise<void>((resolve) => {
-        server.close(() => resolve())
-        server.closeAllConnections()
-      }),
-  }
-}
-export type Receiver = Awaited<ReturnType<typeof startReceiver>>
 
 export type BridgeSite = {
   simulator: Simulator
