@@ -61,14 +61,6 @@ const trips = [
     toDo: /leads between them/,
   },
   {
-    name: 'the coils are too hot',
-    ask: 'fault',
-    details: { name: 'coil-hot', on: true, value: 80 },
-    undo: { name: 'coil-hot', on: false },
-    says: /The coils are at \d+/i,
-    toDo: /Let the coils cool/,
-  },
-  {
     name: 'a meter falls silent',
     ask: 'line',
     details: { instrument: 'anode-meter', mode: 'silent' },
@@ -83,6 +75,14 @@ const trips = [
     undo: { instrument: 'supply', mode: 'good' },
     says: /line to the supply was lost/i,
     toDo: /Treat the tube as live/,
+  },
+  {
+    name: 'the coils are too hot',
+    ask: 'fault',
+    details: { name: 'coil-hot', on: true, value: 57 },
+    undo: { name: 'coil-hot', on: false },
+    says: /The coils are at \d+/i,
+    toDo: /Let the coils cool/,
   },
 ] as const
 
@@ -119,14 +119,19 @@ test('A technician pulls the plug in ten ways: the terminal is down each time, a
       if (name === 'the coils are too hot')
         await askSimulator(site.simulatorTest, 'set', benchId, { coilCelsius: 22 })
       const reset = trip.getByRole('button', { name: 'Reset', exact: true })
-      await expect(reset).toHaveAttribute('aria-disabled', 'false', { timeout: 30_000 })
+      // The bridge carries the coils' temperature on by its cooling model until a current measures it again.
+      await expect(reset).toHaveAttribute('aria-disabled', 'false', { timeout: 120_000 })
       await reset.click()
       await expect(trip).toBeHidden()
     })
 
   await test.step('every trip is in the log of the bench', async () => {
-    await page.goto(`/benches/${benchId}/log`)
-    for (const { says } of trips) await expect(page.getByText(says).first()).toBeVisible()
+    const pages: string[] = []
+    for (let number = 1; number <= 6; number++) {
+      await page.goto(`/benches/${benchId}/log?page=${number}`)
+      pages.push((await page.getByRole('main').textContent()) ?? '')
+    }
+    for (const { says } of trips) expect(pages.join('\n')).toMatch(says)
     await expectAccessible(page)
   })
 })
