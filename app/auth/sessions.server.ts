@@ -1,7 +1,7 @@
 import { and, eq, gt, isNull, ne } from 'drizzle-orm'
 import { createSessionStorage } from 'react-router'
 import type { Person } from '../context.ts'
-import type { Database } from '../db/client.server.ts'
+import { type Database, write } from '../db/client.server.ts'
 import { people, sessions } from '../db/schema.ts'
 import { siteDatabase } from '../db/site.server.ts'
 import { environment } from '../env.server.ts'
@@ -23,10 +23,13 @@ function storage() {
     },
     async createData(data) {
       if (!data.personId) throw new Error('A session needs a person')
-      const [row] = await (await siteDatabase())
-        .insert(sessions)
-        .values({ personId: data.personId, expiresAt: new Date(Date.now() + sessionDays * 86_400_000) })
-        .returning({ id: sessions.id })
+      const values = {
+        personId: data.personId,
+        expiresAt: new Date(Date.now() + sessionDays * 86_400_000),
+      }
+      const [row] = await write(await siteDatabase(), (tx) =>
+        tx.insert(sessions).values(values).returning({ id: sessions.id }),
+      )
       if (!row) throw new Error('The session was not stored')
       return row.id
     },
@@ -38,7 +41,9 @@ function storage() {
     },
     async updateData() {},
     async deleteData(id) {
-      await (await siteDatabase()).update(sessions).set({ revokedAt: new Date() }).where(eq(sessions.id, id))
+      await write(await siteDatabase(), (tx) =>
+        tx.update(sessions).set({ revokedAt: new Date() }).where(eq(sessions.id, id)),
+      )
     },
   })
 }
@@ -59,10 +64,12 @@ export async function endSession(request: Request): Promise<string> {
 
 /** Revokes every session of a person but one. */
 export async function endOtherSessions(db: Database, personId: string, sessionId: string): Promise<void> {
-  await db
-    .update(sessions)
-    .set({ revokedAt: new Date() })
-    .where(and(eq(sessions.personId, personId), ne(sessions.id, sessionId), isNull(sessions.revokedAt)))
+  await write(db, (tx) =>
+    tx
+      .update(sessions)
+      .set({ revokedAt: new Date() })
+      .where(and(eq(sessions.personId, personId), ne(sessions.id, sessionId), isNull(sessions.revokedAt))),
+  )
 }
 
 /** The person behind a request, or null. A disabled account has no sessions. */
@@ -84,6 +91,8 @@ export async function getPerson(db: Database, request: Request): Promise<Person 
   if (!row) return null
   const { lastSeenAt, ...person } = row
   if (Date.now() - lastSeenAt.getTime() > seenAgainMs)
-    await db.update(sessions).set({ lastSeenAt: new Date() }).where(eq(sessions.id, session.id))
+    await write(db, (tx) =>
+      tx.update(sessions).set({ lastSeenAt: new Date() }).where(eq(sessions.id, session.id)),
+    )
   return { ...person, sessionId: session.id }
 }

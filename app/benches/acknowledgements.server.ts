@@ -1,5 +1,5 @@
 import { and, eq, inArray } from 'drizzle-orm'
-import type { Database } from '../db/client.server.ts'
+import { type Database, write } from '../db/client.server.ts'
 import { acknowledgements } from '../db/schema.ts'
 import { cautionsVersion, termOf } from './cautions.ts'
 
@@ -11,10 +11,12 @@ export async function acknowledgeCautions(
   db: Database,
   { personId, now = new Date() }: { personId: string; now?: Date },
 ): Promise<void> {
-  await db
-    .insert(acknowledgements)
-    .values({ personId, term: termOf(now), cautionsVersion, acknowledgedAt: now })
-    .onConflictDoNothing()
+  await write(db, (tx) =>
+    tx
+      .insert(acknowledgements)
+      .values({ personId, term: termOf(now), cautionsVersion, acknowledgedAt: now })
+      .onConflictDoNothing(),
+  )
 }
 
 /** Those of the given people who have acknowledged the present cautions for this term. */

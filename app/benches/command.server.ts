@@ -3,7 +3,7 @@ import * as z from 'zod'
 import { type Capability, may } from '../auth/capabilities.ts'
 import { type BridgeAnswer, sendCommand, sendRoomMakeSafe } from '../bridge-link/bridge-client.server.ts'
 import type { Person } from '../context.ts'
-import type { Database } from '../db/client.server.ts'
+import { type Database, write } from '../db/client.server.ts'
 import { benchCommands, benches } from '../db/schema.ts'
 import type { Command } from '../protocol/commands.ts'
 import { hasAcknowledged } from './acknowledgements.server.ts'
@@ -127,20 +127,12 @@ async function noteCommand(
     if (!isMakeSafe) return void (await writing)
     await writing.catch((error: unknown) => console.error('A make safe was not noted:', error))
   }
-  await store(
-    db
-      .insert(benchCommands)
-      .values({ id, ...values, askedAt: new Date() })
-      .execute(),
-  )
-  return (outcome, answer) =>
-    store(
-      db
-        .update(benchCommands)
-        .set({ outcome, answer, answeredAt: new Date() })
-        .where(eq(benchCommands.id, id))
-        .execute(),
-    )
+  const askedAt = new Date()
+  await store(write(db, (tx) => tx.insert(benchCommands).values({ id, ...values, askedAt })))
+  return (outcome, answer) => {
+    const answered = { outcome, answer, answeredAt: new Date() }
+    return store(write(db, (tx) => tx.update(benchCommands).set(answered).where(eq(benchCommands.id, id))))
+  }
 }
 
 async function noteSilence(

@@ -2,7 +2,7 @@ import { and, asc, eq, exists, isNull, or, type SQL, sql } from 'drizzle-orm'
 import { data } from 'react-router'
 import { may } from '../auth/capabilities.ts'
 import type { Person } from '../context.ts'
-import type { Database } from '../db/client.server.ts'
+import type { Database, Transaction } from '../db/client.server.ts'
 import { benches, benchRevisions, classBenches, classMembers, people } from '../db/schema.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
 import type { Role } from '../safety/types.ts'
@@ -11,7 +11,7 @@ export type Watcher = Pick<Person, 'id' | 'role'>
 export type VisibleBench = { id: string; name: string; place: string; config: BenchConfig }
 
 /** The condition on `benches` that leaves the ones that a person may watch: all, or those of their classes, or none. */
-export function visibleTo(db: Database, person: Watcher): SQL | undefined {
+export function visibleTo(db: Database | Transaction, person: Watcher): SQL | undefined {
   if (may(person.role, 'watch-all-benches')) return undefined
   if (!may(person.role, 'watch-class-benches')) return sql`false`
   return exists(

@@ -1,9 +1,8 @@
 import { and, asc, eq, gt } from 'drizzle-orm'
-import { type Database, write } from '../db/client.server.ts'
+import { type Database, type Transaction, write } from '../db/client.server.ts'
 import { benchEvents, channelSummaries, spoolMarks } from '../db/schema.ts'
 import type { SpoolBatch } from '../protocol/commands.ts'
 
-type Transaction = Parameters<Parameters<typeof write>[1]>[0]
 type Numbered = typeof benchEvents | typeof channelSummaries
 
 // Below the number of values that SQLite binds in one statement.

@@ -1,11 +1,13 @@
 import { href, useFetcher, useLocation, useRouteLoaderData } from 'react-router'
 import type { loader } from '../root.tsx'
+import type { clientAction } from '../routes/account/room-light.ts'
 
 /** The two looks of the interface. It changes at once; the server stores it and the reload renders it. */
 export function RoomLightSwitch() {
-  const fetcher = useFetcher()
+  const fetcher = useFetcher<typeof clientAction>()
   const location = useLocation()
   const stored = useRouteLoaderData<typeof loader>('root')?.roomLight ?? 'lit'
+  const isRefused = fetcher.state === 'idle' && fetcher.data !== undefined && 'refusals' in fetcher.data
   const light = fetcher.formData?.get('roomLight') ?? stored
   return (
     <fetcher.Form
@@ -22,6 +24,9 @@ export function RoomLightSwitch() {
     >
       <span className="text-ink-soft max-sm:sr-only" id="room-light">
         room light
+      </span>
+      <span role="status" className="text-trip empty:hidden">
+        {isRefused && 'not stored'}
       </span>
       <input type="hidden" name="returnTo" value={location.pathname + location.search} />
       <fieldset aria-labelledby="room-light" className="flex rounded-sm border border-edge">

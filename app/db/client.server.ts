@@ -17,16 +17,17 @@ export async function openDatabase(url: string): Promise<Database> {
   return db
 }
 
+/** What `write` hands to its work. Reads as a `Database` does. */
+export type Transaction = Parameters<Parameters<Database['transaction']>[0]>[0]
+
 const queues = new WeakMap<Client, Promise<unknown>>()
 
 /**
- * One writer: a transaction waits for the one before it. A second transaction of the same process would otherwise wait
- * inside SQLite, where it blocks the event loop. Do only SQL in `work`.
+ * One writer: every change to the database, a single statement too, waits for the transaction before it. A second writer
+ * of the same process would otherwise wait inside SQLite, where it blocks the event loop, so that the first cannot end.
+ * Do only SQL in `work`, and no further `write`.
  */
-export function write<T>(
-  db: Database,
-  work: (tx: Parameters<Parameters<Database['transaction']>[0]>[0]) => Promise<T>,
-): Promise<T> {
+export function write<T>(db: Database, work: (tx: Transaction) => Promise<T>): Promise<T> {
   const before = queues.get(db.$client) ?? Promise.resolve()
   const run = before.then(() => db.transaction(work, { behavior: 'immediate' }))
   queues.set(

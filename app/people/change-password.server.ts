@@ -3,7 +3,7 @@ import { hashPassword, passwordMatches } from '../auth/password.server.ts'
 import { endOtherSessions } from '../auth/sessions.server.ts'
 import { revokeResumeKeys } from '../bridge-link/bridge-client.server.ts'
 import type { Person } from '../context.ts'
-import type { Database } from '../db/client.server.ts'
+import { type Database, write } from '../db/client.server.ts'
 import { people } from '../db/schema.ts'
 import { sendMail } from '../mail/mail.server.ts'
 
@@ -20,10 +20,8 @@ export async function changePassword(
     columns: { passwordHash: true },
   })
   if (!(await passwordMatches(row?.passwordHash, current))) return false
-  await db
-    .update(people)
-    .set({ passwordHash: await hashPassword(next) })
-    .where(eq(people.id, person.id))
+  const passwordHash = await hashPassword(next)
+  await write(db, (tx) => tx.update(people).set({ passwordHash }).where(eq(people.id, person.id)))
   await endOtherSessions(db, person.id, person.sessionId)
   void revokeResumeKeys(person.id)
   // The password has changed whether or not the notice arrives.

@@ -1,9 +1,8 @@
 import { and, desc, eq, isNull } from 'drizzle-orm'
-import { type Database, write } from '../db/client.server.ts'
+import { type Database, type Transaction, write } from '../db/client.server.ts'
 import { people, runs } from '../db/schema.ts'
 
 export type Run = { id: string; startedAt: Date; by: string }
-type Transaction = Parameters<Parameters<typeof write>[1]>[0]
 
 /** The open run of a bench, or null. */
 export async function findOpenRun(db: Database | Transaction, benchId: string): Promise<Run | null> {

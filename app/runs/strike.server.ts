@@ -2,7 +2,7 @@ import * as z from 'zod'
 import { may } from '../auth/capabilities.ts'
 import { type Answered, done, fieldErrors, ownCodes, refused } from '../benches/action-reply.ts'
 import type { Watcher } from '../benches/visible-benches.server.ts'
-import type { Database } from '../db/client.server.ts'
+import { type Database, write } from '../db/client.server.ts'
 import { strikes } from '../db/schema.ts'
 import { strikeFormSchema } from './forms.ts'
 import { requireVisibleReading } from './visible-reading.server.ts'
@@ -26,16 +26,15 @@ export async function strikeReading(
     }
   const parsed = strikeFormSchema.safeParse(Object.fromEntries(request.form))
   if (!parsed.success) return { status: 400, reply: fieldErrors(z.flattenError(parsed.error).fieldErrors) }
-  const [struck] = await db
-    .insert(strikes)
-    .values({
-      readingId: reading.id,
-      personId: request.person.id,
-      reason: parsed.data.reason,
-      struckAt: new Date(),
-    })
-    .onConflictDoNothing()
-    .returning({ readingId: strikes.readingId })
+  const values = {
+    readingId: reading.id,
+    personId: request.person.id,
+    reason: parsed.data.reason,
+    struckAt: new Date(),
+  }
+  const [struck] = await write(db, (tx) =>
+    tx.insert(strikes).values(values).onConflictDoNothing().returning({ readingId: strikes.readingId }),
+  )
   if (!struck)
     return {
       status: 409,

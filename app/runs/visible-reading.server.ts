@@ -1,7 +1,7 @@
 import { and, eq } from 'drizzle-orm'
 import { data } from 'react-router'
 import { visibleTo, type Watcher } from '../benches/visible-benches.server.ts'
-import type { Database } from '../db/client.server.ts'
+import type { Database, Transaction } from '../db/client.server.ts'
 import { benches, benchRevisions, readings, strikes } from '../db/schema.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
 
@@ -10,7 +10,7 @@ import type { BenchConfig } from '../protocol/bench-config.ts'
  * Throws a 404 when there is none.
  */
 export async function requireVisibleReading(
-  db: Database,
+  db: Database | Transaction,
   { benchId, readingId, person }: { benchId: string; readingId: string; person: Watcher },
 ): Promise<{ id: string; number: number; personId: string; config: BenchConfig; isStruck: boolean }> {
   const [reading] = await db
