@@ -26,6 +26,7 @@ const site = await startSite({
   },
   host,
   isDev,
+  onMail: ({ to, subject }) => console.log(`Mail to ${to}: ${subject}`),
   isLoud: isDev || process.argv.includes('--loud'),
 })
 

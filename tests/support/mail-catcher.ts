@@ -6,7 +6,10 @@ import { SMTPServer } from 'smtp-server'
 export type MailCatcher = { port: number; messages: ParsedMail[]; close: () => Promise<void> }
 
 /** A real SMTP server on this machine that keeps what it is handed and sends nothing on. */
-export async function startMailCatcher(port = 0, onMail?: (mail: ParsedMail) => void): Promise<MailCatcher> {
+export async function startMailCatcher(
+  port = 0,
+  onMail?: (mail: { to: string; subject: string }) => void,
+): Promise<MailCatcher> {
   const messages: ParsedMail[] = []
   const smtp = new SMTPServer({
     authOptional: true,
@@ -14,7 +17,8 @@ export async function startMailCatcher(port = 0, onMail?: (mail: ParsedMail) => 
     onData(stream, _session, callback) {
       simpleParser(stream).then((mail) => {
         messages.push(mail)
-        onMail?.(mail)
+        const to = [mail.to ?? []].flat().map(({ text }) => text)
+        onMail?.({ to: to.join(', '), subject: mail.subject ?? '' })
         callback()
       }, callback)
     },

@@ -13,6 +13,7 @@ export type SiteOptions = {
   isDev?: boolean
   isLoud?: boolean
   env?: Record<string, string>
+  onMail?: (mail: { to: string; subject: string }) => void
 }
 
 const parts = ['simulator', 'bridge', 'app'] as const
@@ -40,6 +41,7 @@ export async function startSite({
   isDev,
   isLoud,
   env = {},
+  onMail,
 }: SiteOptions): Promise<Site> {
   mkdirSync(dataDir, { recursive: true })
   const {
@@ -49,7 +51,7 @@ export async function startSite({
   } = ports ?? { app: await freePort(), bridge: await freePort(), mail: 0 }
   const link = await freePort()
   const test = await freePort()
-  const mail = await startMailCatcher(mailPort)
+  const mail = await startMailCatcher(mailPort, onMail)
   const url = `http://127.0.0.1:${app}`
   const bridgeUrl = `http://127.0.0.1:${bridge}`
   const databaseUrl = `file:${join(dataDir, 'coilside.db')}`
