@@ -14,4 +14,5 @@ export type Person = {
 /** The person signed in. Set by the guard of `routes/signed-in.tsx`; reading it elsewhere throws. */
 export const personContext = createContext<Person>()
 export const databaseContext = createContext<Database>()
-export const nonceContext = createContext<string>()
+/** Set by the root's middleware; null for a request that comes to no route. */
+export const nonceContext = createContext<string | null>(null)

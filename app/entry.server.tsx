@@ -23,8 +23,9 @@ export default function handleRequest(
   routerContext: EntryContext,
   context: RouterContextProvider,
 ) {
-  if (request.method === 'HEAD') return new Response(null, { status, headers })
   const nonce = context.get(nonceContext)
+  // Without a nonce the middleware has not run: a method that no route takes.
+  if (request.method === 'HEAD' || nonce === null) return new Response(null, { status, headers })
 
   return new Promise<Response>((resolve, reject) => {
     let shellRendered = false

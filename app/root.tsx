@@ -1,6 +1,7 @@
 import { Links, Meta, Outlet, Scripts, ScrollRestoration } from 'react-router'
 import type { Route } from './+types/root'
 import './app.css'
+import { limitBody } from './auth/request-body.server.ts'
 import { readRoomLight } from './auth/room-light.server.ts'
 import { sameOrigin } from './auth/same-origin.server.ts'
 import { securityHeaders } from './auth/security-headers.server.ts'
@@ -13,6 +14,7 @@ import { siteDatabase } from './db/site.server.ts'
 export const middleware: Route.MiddlewareFunction[] = [
   securityHeaders,
   sameOrigin,
+  limitBody,
   async ({ context }, next) => {
     context.set(databaseContext, await siteDatabase())
     return next()

@@ -14,6 +14,8 @@ export const securityHeaders: MiddlewareFunction<Response> = async ({ request, c
   headers.set('X-Content-Type-Options', 'nosniff')
   headers.set('Referrer-Policy', 'same-origin')
   headers.set('X-Frame-Options', 'DENY')
+  // What the Back button shows after signing out, on a computer that many share.
+  if (!headers.has('Cache-Control')) headers.set('Cache-Control', 'no-store')
   headers.set('Permissions-Policy', 'camera=(), microphone=(), geolocation=()')
   // The development server puts style elements without a nonce and talks to its own socket.
   const style = isDevelopment ? "'unsafe-inline'" : `'nonce-${nonce}'`
@@ -27,6 +29,7 @@ export const securityHeaders: MiddlewareFunction<Response> = async ({ request, c
       "style-src-attr 'unsafe-inline'",
       "img-src 'self' data: blob:",
       `connect-src 'self' ${new URL(bridgeSocketUrl(request)).origin} ${connect}`,
+      "object-src 'none'",
       "frame-ancestors 'none'",
       "base-uri 'self'",
       "form-action 'self'",

@@ -9,6 +9,9 @@ import { environment } from '../env.server.ts'
 const sessionDays = 14
 const seenAgainMs = 60_000
 
+/** Whether browsers reach this site over HTTPS, so that a cookie may keep to it. */
+export const isHttps = () => new URL(environment().SITE_URL).protocol === 'https:'
+
 /** The cookie holds only the row's id, signed; the row says whose it is and whether it still stands. */
 function storage() {
   return createSessionStorage<{ personId: string }>({
@@ -17,7 +20,7 @@ function storage() {
       path: '/',
       httpOnly: true,
       sameSite: 'lax',
-      secure: new URL(environment().SITE_URL).protocol === 'https:',
+      secure: isHttps(),
       secrets: [environment().SESSION_SECRET],
       maxAge: sessionDays * 86_400,
     },
@@ -50,8 +53,12 @@ function storage() {
 
 const readSession = (request: Request) => storage().getSession(request.headers.get('Cookie'))
 
-/** Starts a new session for a person and returns its Set-Cookie. The id is always new. */
-export async function startSession(personId: string): Promise<string> {
+/**
+ * Starts a new session for a person and returns its Set-Cookie. The id is always new, and the session that the browser
+ * brought, if it did, ends: its cookie is overwritten.
+ */
+export async function startSession(personId: string, request?: Request): Promise<string> {
+  if (request) await endSession(request)
   const session = await storage().getSession()
   session.set('personId', personId)
   return storage().commitSession(session)

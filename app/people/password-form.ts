@@ -2,7 +2,7 @@ import * as z from 'zod'
 
 export const passwordSchema = z
   .object({
-    current: z.string({ error: 'Type your present password.' }),
+    current: z.string({ error: 'Type your present password.' }).max(1000, 'This is too long for a password.'),
     next: z
       .string({ error: 'Type the new password.' })
       .min(12, 'At least 12 characters: three or four words do well.')

@@ -21,8 +21,9 @@ async function site() {
   const { getPerson } = await import('#app/auth/sessions.server.ts')
   const { action } = await import('#app/routes/account/sign-in.tsx')
 
-  const signIn = async (email: string, password: string, path = '/sign-in') => {
-    const result = await action(routeArgs(formRequest(path, { email, password }), routeContext(db), {}))
+  const signIn = async (email: string, password: string, path = '/sign-in', headers = {}) => {
+    const request = formRequest(path, { email, password }, headers)
+    const result = await action(routeArgs(request, routeContext(db), {}))
     if (!(result instanceof Response)) return { result, cookie: '' }
     return { result, cookie: result.headers.get('Set-Cookie')?.split(';')[0] ?? '' }
   }
@@ -101,6 +102,44 @@ describe('Signing in', () => {
     expect(errorsOf(result).password?.[0]).toMatch(/Wait \d+ minutes?/)
     expect(statusOf((await signIn('technician@lab.test', 'prove-it-dead-first')).result)).toBe(302)
   })
+
+  it('is throttled however the address is written, and for attempts side by side', async () => {
+    const { signIn } = await site()
+    const spellings = [' nobody2@lab.test', 'NOBODY2@lab.test ', 'Nobody2@Lab.Test', 'nobody2@lab.test\t']
+    const results = await Promise.all(
+      [...spellings, ...spellings].map((email, index) => signIn(email, `wrong-${index}`)),
+    )
+    const statuses = results.map(({ result }) => statusOf(result)).sort()
+    expect(statuses).toEqual([400, 400, 400, 400, 400, 429, 429, 429])
+  })
+
+  it('goes on from a browser that has signed in before, whoever tries passwords elsewhere', async () => {
+    const { signIn } = await site()
+    const first = await signIn('instructor@lab.test', 'lights-off-please')
+    const known = (first.result as Response).headers
+      .getSetCookie()
+      .find((cookie) => cookie.startsWith('coilside_known'))
+    expect(known).toMatch(/HttpOnly.*SameSite=Lax/i)
+    const here = { Cookie: known?.split(';')[0] ?? '' }
+    for (let attempt = 0; attempt < 6; attempt++) await signIn('instructor@lab.test', `wrong-${attempt}`)
+    const elsewhere = await signIn('instructor@lab.test', 'lights-off-please')
+    expect(statusOf(elsewhere.result)).toBe(429)
+    expect(
+      statusOf((await signIn('instructor@lab.test', 'lights-off-please', '/sign-in', here)).result),
+    ).toBe(302)
+    // It is known for this account alone, and its own attempts count too.
+    for (let attempt = 0; attempt < 5; attempt++)
+      await signIn('instructor@lab.test', `wrong-${attempt}`, '/sign-in', here)
+    expect(
+      statusOf((await signIn('instructor@lab.test', 'lights-off-please', '/sign-in', here)).result),
+    ).toBe(429)
+  })
+
+  it('refuses an address or a password of a length that none has', async () => {
+    const { signIn } = await site()
+    const { result } = await signIn(`${'x'.repeat(250)}@lab.test`, 'y'.repeat(1001))
+    expect(Object.keys(errorsOf(result))).toEqual(['email', 'password'])
+  })
 })
 
 describe('A session', () => {
@@ -122,10 +161,11 @@ describe('A session', () => {
 
   it('is none for a disabled account', async () => {
     const { db, signIn, personOf } = await site()
-    const { cookie } = await signIn('instructor@lab.test', 'lights-off-please')
-    await db.update(people).set({ disabledAt: new Date() }).where(eq(people.email, 'instructor@lab.test'))
+    const { cookie } = await signIn('student@lab.test', 'two-coils-one-beam')
+    expect(await personOf(cookie)).toBeTruthy()
+    await db.update(people).set({ disabledAt: new Date() }).where(eq(people.email, 'student@lab.test'))
     expect(await personOf(cookie)).toBeNull()
-    await db.update(people).set({ disabledAt: null }).where(eq(people.email, 'instructor@lab.test'))
+    await db.update(people).set({ disabledAt: null }).where(eq(people.email, 'student@lab.test'))
   })
 })
 
@@ -152,6 +192,24 @@ describe('A change of password', () => {
     expect(mail.messages[0]?.subject).toBe('Your Coilside password was changed')
     expect(statusOf((await signIn('technician@lab.test', 'prove-it-dead-first')).result)).toBe(400)
     expect(statusOf((await signIn('technician@lab.test', 'a-new-long-password')).result)).toBe(302)
+  })
+})
+
+describe('The present password', () => {
+  it('may be tried five times only, and then the right one waits too', async () => {
+    const { db, signIn, personOf } = await site()
+    const { cookie } = await signIn('student@lab.test', 'two-coils-one-beam')
+    const person = (await personOf(cookie)) as Person
+    const { action } = await import('#app/routes/account/account.tsx')
+    const change = async (current: string) => {
+      const fields = { current, next: 'a-new-long-password', again: 'a-new-long-password' }
+      const result = await action(routeArgs(formRequest('/account', fields), routeContext(db, person), {}))
+      return JSON.stringify(result)
+    }
+    for (let attempt = 0; attempt < 5; attempt++)
+      expect(await change(`wrong-${attempt}`)).toContain('This is not your present password.')
+    expect(await change('two-coils-one-beam')).toContain('Too many attempts')
+    expect(statusOf((await signIn('student@lab.test', 'two-coils-one-beam')).result)).toBe(302)
   })
 })
 

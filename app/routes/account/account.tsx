@@ -1,6 +1,7 @@
 import { getFormProps, getInputProps, useForm } from '@conform-to/react'
 import { parseWithZod } from '@conform-to/zod/v4'
 import { data, Form, href, useNavigation } from 'react-router'
+import { readForm } from '../../auth/request-body.server.ts'
 import { PageFrame } from '../../components/page-frame.tsx'
 import { TextField } from '../../components/text-field.tsx'
 import { databaseContext, personContext } from '../../context.ts'
@@ -14,13 +15,14 @@ export function loader({ context }: Route.LoaderArgs) {
 }
 
 export async function action({ request, context }: Route.ActionArgs) {
-  const submission = parseWithZod(await request.formData(), { schema: passwordSchema })
+  const submission = parseWithZod(await readForm(request), { schema: passwordSchema })
   if (submission.status !== 'success')
     return data({ result: submission.reply(), changed: false }, { status: 400 })
   const { current, next } = submission.value
   const person = context.get(personContext)
-  if (!(await changePassword(context.get(databaseContext), { person, current, next }))) {
-    const result = submission.reply({ fieldErrors: { current: ['This is not your present password.'] } })
+  const refusal = await changePassword(context.get(databaseContext), { person, current, next })
+  if (refusal) {
+    const result = submission.reply({ fieldErrors: { current: [refusal] } })
     return data({ result, changed: false }, { status: 400 })
   }
   return { result: submission.reply({ resetForm: true }), changed: true }

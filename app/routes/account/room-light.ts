@@ -1,6 +1,7 @@
 import { eq } from 'drizzle-orm'
 import { data, redirect } from 'react-router'
 import { localPath } from '../../auth/local-path.ts'
+import { readForm } from '../../auth/request-body.server.ts'
 import { roomLightCookie, roomLightSchema } from '../../auth/room-light.server.ts'
 import { getPerson } from '../../auth/sessions.server.ts'
 import { answerAlways } from '../../benches/answer-always.ts'
@@ -13,7 +14,7 @@ export const loader = () => redirect('/')
 
 /** Stored with the account, and in a cookie. Without scripts the browser is sent back to where it was. */
 export async function action({ request, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const light = roomLightSchema.safeParse(form.get('roomLight'))
   if (!light.success) throw data('The room light is lit or dark.', { status: 400 })
   const roomLight = light.data

@@ -1,6 +1,8 @@
 import { useRef } from 'react'
 import { data, Form, redirect, useNavigation } from 'react-router'
+import { knownBrowserCookie } from '../../auth/known-browser.server.ts'
 import { localPath } from '../../auth/local-path.ts'
+import { readForm } from '../../auth/request-body.server.ts'
 import { getPerson, startSession } from '../../auth/sessions.server.ts'
 import { authenticator, SignInError } from '../../auth/sign-in.server.ts'
 import { Mark } from '../../components/mark.tsx'
@@ -18,14 +20,16 @@ export async function loader({ request, context }: Route.LoaderArgs) {
 }
 
 export async function action({ request }: Route.ActionArgs) {
+  const form = await readForm(request.clone())
   try {
-    const { id } = await authenticator.authenticate('form', request.clone())
-    const returnTo = localPath(new URL(request.url).searchParams.get('returnTo'))
-    return redirect(returnTo, { headers: { 'Set-Cookie': await startSession(id) } })
+    const { id, email } = await authenticator.authenticate('form', request)
+    const headers = new Headers()
+    headers.append('Set-Cookie', await startSession(id, request))
+    headers.append('Set-Cookie', await knownBrowserCookie(request, email))
+    return redirect(localPath(new URL(request.url).searchParams.get('returnTo')), { headers })
   } catch (error) {
     if (!(error instanceof SignInError)) throw error
-    const email = String((await request.formData()).get('email') ?? '')
-    return data({ errors: error.errors, email }, { status: error.status })
+    return data({ errors: error.errors, email: String(form.get('email') ?? '') }, { status: error.status })
   }
 }
 

@@ -1,4 +1,5 @@
 import { may } from '../../auth/capabilities.ts'
+import { readForm } from '../../auth/request-body.server.ts'
 import { listVisibleBenches, requireVisibleBench } from '../../benches/visible-benches.server.ts'
 import { makeTicket } from '../../bridge-link/ticket.server.ts'
 import { databaseContext, personContext } from '../../context.ts'
@@ -9,7 +10,7 @@ import type { Route } from './+types/tickets'
 export async function action({ request, context }: Route.ActionArgs) {
   const db = context.get(databaseContext)
   const person = context.get(personContext)
-  const benchId = (await request.formData()).get('benchId')
+  const benchId = (await readForm(request)).get('benchId')
   let benchIds: string[] | null = null
   if (typeof benchId === 'string' && benchId !== '')
     benchIds = [(await requireVisibleBench(db, { benchId, person })).id]

@@ -1,4 +1,5 @@
 import { data, href, redirect } from 'react-router'
+import { readForm } from '../../auth/request-body.server.ts'
 import { answerAlways } from '../../benches/answer-always.ts'
 import { commandBench } from '../../benches/command.server.ts'
 import { databaseContext, personContext } from '../../context.ts'
@@ -11,7 +12,7 @@ export async function action({ request, params, context }: Route.ActionArgs) {
   const { status, reply } = await commandBench(context.get(databaseContext), {
     benchId: params.benchId,
     person: context.get(personContext),
-    form: await request.formData(),
+    form: await readForm(request),
   })
   return data(reply, { status })
 }
