@@ -175,7 +175,7 @@ export function parseMessage<T>(
   if (typeof raw === 'object' && raw !== null && 'version' in raw && raw.version !== protocolVersion) {
     return {
       ok: false,
-      reason: `Protocol version ${String(raw.version)} is not ${protocolVersion}: reload the page.`,
+      reason: `Protocol version ${typeof raw.version === 'number' ? raw.version : 'unknown'} is not ${protocolVersion}: reload the page.`,
     }
   }
   const parsed = schema.safeParse(raw)

@@ -1,4 +1,5 @@
 import { type Fault, type FaultKind, type FaultTimes, faultsNow, stepFaults } from './faults.ts'
+import { technicianOnly } from './reset.ts'
 import type { BenchPhase, Trip, TripKind } from './types.ts'
 import { anyOutputOn, type BenchView, heaterInBand } from './view.ts'
 import { coldHeater, isWarm, stepWarmUp, type WarmUp } from './warm-up.ts'
@@ -60,6 +61,10 @@ export function advance(
   for (const fault of fresh) {
     if (trip === null) {
       trip = tripOf(fault, wallAt)
+      happenings.push({ kind: 'trip', trip })
+    } else if (technicianOnly.includes(fault.kind) && !technicianOnly.includes(trip.kind)) {
+      // Whoever may reset the first trip must not reset this one with it.
+      trip = { ...tripOf(fault, wallAt), happened: `${fault.happened} Before that: ${trip.happened}` }
       happenings.push({ kind: 'trip', trip })
     } else if (!anyOutputOn(view)) {
       continue

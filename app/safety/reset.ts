@@ -12,7 +12,10 @@ import type { WarmUp } from './warm-up.ts'
 import { inAmps, inCelsius, inMilliamps, inVolts, listed } from './words.ts'
 
 /** Only a technician resets these: they may mean a supply that fails, or damage. */
-const technicianOnly: readonly TripKind[] = ['over-voltage', 'coil-temperature']
+export const technicianOnly: readonly TripKind[] = ['over-voltage', 'coil-temperature']
+
+/** Read at the very moment of a reset, whatever tripped. */
+const needed = ['anodeVolts', 'anodeSupplyVolts', 'anodeAmps', 'coilAmps', 'coilSupplyAmps'] as const
 
 /** Why this person cannot reset the trip now; empty when they can. A reset switches nothing on again. */
 export function refusalsToReset(view: BenchView, warmUp: WarmUp, trip: Trip | null, actor: Actor): Refusal[] {
@@ -62,20 +65,25 @@ function standingFault(view: BenchView, warmUp: WarmUp, kind: TripKind): string 
   return standingReading(view, kind) ?? standingCause(view, warmUp, kind)
 }
 
-/** What must hold before any trip is reset: the anode has been read as discharged. */
+/** What must hold before any trip is reset: the anode has been read as discharged. No reading is no zero. */
 function standingReading({ values }: BenchView, kind: TripKind): string | null {
-  const highest = Math.max(values.anodeVolts ?? 0, values.anodeSupplyVolts ?? 0)
+  const missing = needed.filter((channel) => values[channel] === null)
+  if (values.anodeVolts === null || values.anodeSupplyVolts === null || missing.length > 0) {
+    return `There is still no reading of ${listed(missing.map((name) => channelWords[name]))} at this moment: wait for the next one.`
+  }
+  const highest = Math.max(values.anodeVolts, values.anodeSupplyVolts)
   if (highest > dischargedVolts) {
     return `${inVolts(highest)} is still measured at the anode: treat the tube as live, wait until it is discharged.`
   }
-  if (
-    kind === 'read-back' &&
-    Math.max(Math.abs(values.coilAmps ?? 0), Math.abs(values.coilSupplyAmps ?? 0)) > 0.1
-  ) {
-    return `${inAmps(Math.abs(values.coilAmps ?? 0))} is still measured in the coils: check the coil supply.`
+  const coilAmps = highestCoilAmps(values)
+  if (kind === 'read-back' && coilAmps > 0.1) {
+    return `${inAmps(coilAmps)} is still measured in the coils: check the coil supply.`
   }
   return null
 }
+
+const highestCoilAmps = ({ coilAmps, coilSupplyAmps }: BenchView['values']): number =>
+  Math.max(Math.abs(coilAmps ?? 0), Math.abs(coilSupplyAmps ?? 0))
 
 function standingCause(view: BenchView, warmUp: WarmUp, kind: TripKind): string | null {
   const { values, config, interlock, outputs } = view
@@ -87,7 +95,7 @@ function standingCause(view: BenchView, warmUp: WarmUp, kind: TripKind): string 
     case 'enclosure':
       return interlock?.enclosureClosed === true ? null : 'The enclosure is still open: close it.'
     case 'over-current': {
-      const amps = Math.abs(values.coilAmps ?? 0)
+      const amps = highestCoilAmps(values)
       return amps > limits.coilAmps ? `${inAmps(amps)} is still measured in the coils.` : null
     }
     case 'anode-current': {

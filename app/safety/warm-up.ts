@@ -1,5 +1,5 @@
 import type { BenchLimits, ChannelValues } from './types.ts'
-import { heaterInBand } from './view.ts'
+import { heaterInBand, staleSeconds } from './view.ts'
 
 /** Out of its band for less than this, the heater keeps what it has of its warm-up. */
 export const heaterGraceSeconds = 2
@@ -16,7 +16,8 @@ export const coldHeater: WarmUp = { elapsedSeconds: 0, seenInBand: false, outSin
 
 /**
  * The warm-up after one more sample. Counts while the heater is on and in band, stands still for an excursion
- * shorter than `heaterGraceSeconds`, starts again after a longer one, and is nothing while the heater is off.
+ * shorter than `heaterGraceSeconds`, starts again after a longer one, and is nothing while the heater is off. Time in
+ * which nothing was sampled counts for no more than a sample stays fresh.
  */
 export function stepWarmUp(
   warmUp: WarmUp,
@@ -35,7 +36,8 @@ export function stepWarmUp(
       lastAt: sample.at,
     }
   }
-  const counted = warmUp.lastAt !== null && warmUp.outSince === null ? sample.at - warmUp.lastAt : 0
+  const elapsed = warmUp.lastAt === null ? 0 : Math.min(sample.at - warmUp.lastAt, staleSeconds)
+  const counted = warmUp.outSince === null ? elapsed : 0
   return {
     elapsedSeconds: warmUp.elapsedSeconds + counted,
     seenInBand: true,

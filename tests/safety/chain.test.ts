@@ -112,6 +112,12 @@ describe('The warm-up', () => {
     expect(dip(2.1).elapsedSeconds).toBeLessThan(1)
   })
 
+  it('does not count a pause in which nothing was sampled', () => {
+    const begun = run(startMachine(0), 8, 10, (at) => ready(at)).machine
+    const { machine } = run(begun, 70, 70.1, (at) => ready(at))
+    expect(machine.warmUp.elapsedSeconds).toBeLessThan(3.2)
+  })
+
   it('counts only the time in band, and ends with the heater', () => {
     const { machine } = run(startMachine(0), 8, 13, (at) =>
       ready(at, { values: { ...readyValues, heaterVolts: at < 10 ? 4 : 6.3 } }),

@@ -171,6 +171,29 @@ describe('A second fault', () => {
   })
 })
 
+describe('A fault that a technician alone may reset', () => {
+  it('takes the place of a trip that others may reset, and tells of both', () => {
+    const first = run(liveMachine(), 20.1, 20.3, (at) =>
+      viewAt(at, {}, { interlock: { eStopOut: true, enclosureClosed: false } }),
+    )
+    const { machine, happened } = run(first.machine, 20.4, 20.6, (at) => {
+      const view = viewAt(at, { anode: 0, coils: 0 })
+      return { ...view, values: { ...view.values, anodeVolts: 340 } }
+    })
+    expect(machine.trip?.kind).toBe('over-voltage')
+    expect(machine.trip?.happened).toMatch(/340 V at the anode.*The enclosure was opened/)
+    expect(happened.filter(({ what }) => what.kind === 'trip')).toHaveLength(1)
+  })
+
+  it('is latched when it comes in the same moment as another', () => {
+    const { machine } = run(liveMachine(), 20.1, 20.2, (at) => {
+      const view = viewAt(at, {}, { interlock: { eStopOut: false, enclosureClosed: true } })
+      return { ...view, values: { ...view.values, anodeVolts: 340, anodeSupplyVolts: 340 } }
+    })
+    expect(machine.trip?.kind).toBe('over-voltage')
+  })
+})
+
 describe('The dead-man', () => {
   it('latches its own trip, but does not hide an earlier one', () => {
     const seen = { wallAt: 1, name: 'The student', lost: 'input' as const, minutes: 10 }
