@@ -31,6 +31,8 @@ export type BridgeOptions = {
   cameraLink?: string | undefined
   host: string
   port: number
+  /** Most telemetry sockets at once; a thousand by default. */
+  mostSockets?: number
 }
 
 export type Bridge = {
@@ -86,6 +88,7 @@ export async function createBridge(options: BridgeOptions): Promise<Bridge> {
     allowedOrigins: options.allowedOrigins,
     revokedAt: (personId) => revocations.get(personId) ?? null,
     log,
+    ...(options.mostSockets === undefined ? {} : { mostSockets: options.mostSockets }),
   })
   const server = createHttp({
     room,

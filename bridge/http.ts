@@ -14,6 +14,8 @@ import type { Room } from './room.ts'
 import { createSignatureCheck } from './signatures.ts'
 
 const largestBodyBytes = 1024 * 1024
+/** Who sends slower than this is cut off. */
+const timeLimits = { headersTimeout: 5000, requestTimeout: 10_000, connectionsCheckingInterval: 1000 }
 
 type HttpOptions = {
   room: Room
@@ -84,7 +86,7 @@ export function createHttp(options: HttpOptions): Server {
     }
   }
 
-  return createServer((request, response) => {
+  const server = createServer(timeLimits, (request, response) => {
     handle(request)
       .catch((error: unknown) => {
         if (error instanceof URIError) return answer(400, { reason: 'The path cannot be read.' })
@@ -93,6 +95,9 @@ export function createHttp(options: HttpOptions): Server {
       })
       .then((reply) => send(response, reply))
   })
+  // A connection that cannot be accepted (no descriptor left) is no reason to end.
+  server.on('error', (error) => options.log.error({ error: String(error) }, 'The HTTP server failed'))
+  return server
 }
 
 async function withBody<T>(
@@ -112,6 +117,7 @@ async function withBody<T>(
 
 /** The body as text; null when it is too large. */
 async function readBody(request: IncomingMessage): Promise<string | null> {
+  if (Number(request.headers['content-length'] ?? 0) > largestBodyBytes) return null
   const parts: Buffer[] = []
   let bytes = 0
   for await (const part of request as AsyncIterable<Buffer>) {
@@ -128,6 +134,7 @@ function send(response: ServerResponse, { status, body }: Answer): void {
     'content-type': 'application/json',
     'content-length': Buffer.byteLength(text),
     'cache-control': 'no-store',
+    ...(status === 413 ? { connection: 'close' } : {}),
   })
   response.end(text)
 }

@@ -59,8 +59,10 @@ export function createRoom(options: RoomOptions): Room {
         })),
       ),
     async makeSafeFromPage(ticket, benchId) {
+      const bench = benchId === null ? undefined : benches.get(benchId)
+      const isWatched = ticket.benchIds === null || (benchId !== null && ticket.benchIds.includes(benchId))
       if (ticket.role === 'guest') {
-        refuse(ticket, benchId, 'A guest of a demonstration may watch only.')
+        refuse(ticket, bench && isWatched ? benchId : null, 'A guest of a demonstration may watch only.')
         return
       }
       const cause = `${ticket.name} asked for make safe.`
@@ -69,10 +71,8 @@ export function createRoom(options: RoomOptions): Room {
         else refuse(ticket, null, 'Only an instructor or a technician may make the whole room safe.')
         return
       }
-      const bench = benches.get(benchId)
-      const isWatched = ticket.benchIds === null || ticket.benchIds.includes(benchId)
       if (bench && isWatched) await bench.makeSafe(cause, ticket)
-      else refuse(ticket, null, `You do not watch ${benchId}.`)
+      else refuse(ticket, null, bench ? `You do not watch ${benchId}.` : 'There is no such bench.')
     },
     async close() {
       await Promise.all([...benches.values()].map((bench) => bench.close()))

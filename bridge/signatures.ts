@@ -5,7 +5,7 @@ import { isSignatureOf, signatureOf } from './tickets.ts'
 
 type SignedRequest = { method: string; path: string; headers: IncomingHttpHeaders; body: string }
 
-const longestNonce = 128
+const nonceLengths = { least: 16, most: 64 }
 
 /** Headers that sign a request from the bridge to the app. `now` is seconds since 1970. */
 export function signedHeaders(
@@ -43,7 +43,7 @@ export function createSignatureCheck(secret: string, startedAt: number) {
       nonce,
       body: request.body,
     })
-    if (nonce === '' || nonce.length > longestNonce || !Number.isFinite(signedAt)) {
+    if (nonce.length < nonceLengths.least || nonce.length > nonceLengths.most || !Number.isFinite(signedAt)) {
       return { ok: false, reason: 'The request is not signed.' }
     }
     if (!isSignatureOf(secret, text, header(signatureHeaders.signature))) {

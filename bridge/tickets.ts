@@ -61,8 +61,12 @@ export function readTicket(
   return { ok: true, ticket }
 }
 
-/** A key with which the same page reconnects while the app is away: to watch and to make safe. */
+/**
+ * A key with which the same page reconnects while the app is away: to watch and to make safe. A page that came with a
+ * key gets the same one again, so that it ends twelve hours after the app's own word.
+ */
 export function resumeKeyFor(secret: string, ticket: Ticket, now: number): string {
+  if (ticket.use === 'resume') return writeTicket(secret, ticket)
   return writeTicket(secret, {
     ...ticket,
     use: 'resume',

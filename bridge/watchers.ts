@@ -33,6 +33,14 @@ export class Watchers {
     this.#watchers.delete(watcher)
   }
 
+  has(watcher: Watcher): boolean {
+    return this.#watchers.has(watcher)
+  }
+
+  get size(): number {
+    return this.#watchers.size
+  }
+
   [Symbol.iterator](): Iterator<Watcher> {
     return this.#watchers.values()
   }

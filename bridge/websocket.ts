@@ -4,6 +4,7 @@ import type { Duplex } from 'node:stream'
 import { type WebSocket, WebSocketServer } from 'ws'
 import type { Ticket } from '#app/protocol/commands.ts'
 import { fromBrowserSchema, parseMessage, protocolVersion } from '#app/protocol/messages.ts'
+import { Allowance } from './allowance.ts'
 import type { Bus } from './bus.ts'
 import type { Clock } from './clock.ts'
 import type { Log } from './log.ts'
@@ -14,10 +15,21 @@ import { mayWatch, send, type Watcher, Watchers } from './watchers.ts'
 
 export const telemetryPath = '/telemetry'
 const largestMessageBytes = 4096
+/** No more than this many sockets at once: a flood of them must not take the memory of the room's guard. */
+const mostSockets = 1000
+/** A page says a message in two seconds; who says this many at once, and goes on at this rate, is sent away. */
+const messagesAtOnce = 40
+const messagesPerSecond = 10
 const pingSeconds = 1.5
+const lookSeconds = 0.25
 /** A socket that has not been heard for this long is lost. */
 const silentSeconds = 5
 const badMessageCode = 1008
+const failedCode = 1011
+/** The code of a socket that ended without a farewell. */
+const abnormalCode = 1006
+/** A page that does not answer the closing handshake is cut off after this. */
+const farewellSeconds = 0.5
 const revokedCode = 4001
 
 type TelemetryOptions = {
@@ -29,6 +41,8 @@ type TelemetryOptions = {
   allowedOrigins: readonly string[]
   revokedAt: (personId: string) => number | null
   log: Log
+  /** Most sockets at once; a thousand by default. */
+  mostSockets?: number
 }
 
 export type Telemetry = {
@@ -59,7 +73,11 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
       refuseUpgrade(socket, 403, 'Forbidden', 'This origin may not connect.')
       return
     }
-    const url = new URL(request.url ?? '/', 'http://bridge')
+    const url = urlOf(request)
+    if (url === null) {
+      refuseUpgrade(socket, 400, 'Bad Request', 'The address cannot be read.')
+      return
+    }
     if (url.pathname !== telemetryPath) {
       refuseUpgrade(socket, 404, 'Not Found', 'There is nothing here.')
       return
@@ -67,6 +85,10 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
     const checked = ticketOf(url, options)
     if (!checked.ok) {
       refuseUpgrade(socket, 401, 'Unauthorized', checked.reason)
+      return
+    }
+    if (watchers.size >= (options.mostSockets ?? mostSockets)) {
+      refuseUpgrade(socket, 503, 'Service Unavailable', 'Too many pages watch this room.')
       return
     }
     server.handleUpgrade(request, socket, head, (accepted) => welcome(accepted, checked.ticket))
@@ -81,6 +103,7 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
       benchId: null,
       lostSamples: 0,
     }
+    const allowance = new Allowance(messagesAtOnce, messagesPerSecond, clock)
     const benches = room.benches().filter(({ benchId }) => mayWatch(ticket, benchId))
     send(watcher, {
       type: 'hello',
@@ -100,12 +123,25 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
       }
     }
     watchers.add(watcher)
-    socket.on('message', (data, isBinary) => hear(watcher, isBinary ? null : data.toString()))
+    socket.on('message', (data, isBinary) => {
+      // Of a page that was sent away nothing counts any more.
+      if (!watchers.has(watcher)) return
+      if (!allowance.take()) end(watcher, badMessageCode, 'Too many messages: reload the page.')
+      else hear(watcher, isBinary ? null : data.toString())
+    })
     socket.on('pong', () => {
       watcher.lastHeardAt = clock.now()
     })
     socket.on('error', (error) => options.log.warn({ error: String(error) }, 'A telemetry socket failed'))
-    socket.on('close', () => forget(watcher, clock.now()))
+    socket.on('close', (code) => forget(watcher, code === abnormalCode ? watcher.lastHeardAt : clock.now()))
+  }
+
+  /** Says why, and is rid of the page whether or not it answers the farewell. */
+  function end(watcher: Watcher, code: number, reason: string): void {
+    send(watcher, { type: 'bye', reason })
+    watcher.socket.close(code)
+    forget(watcher, clock.now())
+    setTimeout(() => watcher.socket.terminate(), farewellSeconds * 1000).unref()
   }
 
   function forget(watcher: Watcher, lastHeardAt: number): void {
@@ -113,20 +149,31 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
     for (const bench of room.benches()) bench.controls.pageGone(watcher.pageId, lastHeardAt)
   }
 
+  const failed = (error: unknown) => options.log.error({ error: String(error) }, 'A message of a page failed')
+
+  /** Whatever a page says, it must not end the bridge. */
   function hear(watcher: Watcher, text: string | null): void {
     watcher.lastHeardAt = clock.now()
+    try {
+      heed(watcher, text)
+    } catch (error) {
+      failed(error)
+      end(watcher, failedCode, 'The bridge failed to understand this page: reload it.')
+    }
+  }
+
+  function heed(watcher: Watcher, text: string | null): void {
     const parsed =
       text === null
         ? { ok: false as const, reason: 'Only text is understood here.' }
         : parseMessage(fromBrowserSchema, text)
     if (!parsed.ok) {
-      send(watcher, { type: 'bye', reason: parsed.reason })
-      watcher.socket.close(badMessageCode)
+      end(watcher, badMessageCode, parsed.reason)
       return
     }
     const { message } = parsed
     if (message.type === 'present') notePresence(watcher, message.benchId, message.input)
-    else void room.makeSafeFromPage(watcher.ticket, message.benchId)
+    else room.makeSafeFromPage(watcher.ticket, message.benchId).catch(failed)
   }
 
   function notePresence(watcher: Watcher, benchId: string, hadInput: boolean): void {
@@ -139,38 +186,44 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
     bench.controls.pagePresent(watcher.pageId, watcher.ticket.personId, hadInput)
   }
 
+  let pingedAt = clock.now()
   const timer = setInterval(() => {
+    const now = clock.now()
+    const isPingDue = now - pingedAt >= pingSeconds
+    if (isPingDue) pingedAt = now
     for (const watcher of watchers) {
-      if (clock.now() - watcher.lastHeardAt > silentSeconds) {
+      if (now - watcher.lastHeardAt > silentSeconds) {
         forget(watcher, watcher.lastHeardAt)
         watcher.socket.terminate()
-      } else if (watcher.socket.readyState === watcher.socket.OPEN) {
+      } else if (isPingDue && watcher.socket.readyState === watcher.socket.OPEN) {
         watcher.socket.ping()
       }
     }
-  }, pingSeconds * 1000)
+  }, lookSeconds * 1000)
 
   return {
     upgrade,
     watchers,
     dismiss(personId) {
       for (const watcher of watchers) {
-        if (watcher.ticket.personId !== personId) continue
-        send(watcher, { type: 'bye', reason: 'You have been signed out: sign in again.' })
-        watcher.socket.close(revokedCode)
+        if (watcher.ticket.personId === personId)
+          end(watcher, revokedCode, 'You have been signed out: sign in again.')
       }
     },
     close() {
       clearInterval(timer)
       unsubscribe()
-      for (const watcher of watchers) {
-        send(watcher, { type: 'bye', reason: 'The bridge is being stopped.' })
-        watcher.socket.close(1001)
-        // A page that does not answer the closing handshake must not keep the bridge from ending.
-        setTimeout(() => watcher.socket.terminate(), 500).unref()
-      }
+      for (const watcher of watchers) end(watcher, 1001, 'The bridge is being stopped.')
       server.close()
     },
+  }
+}
+
+function urlOf(request: IncomingMessage): URL | null {
+  try {
+    return new URL(request.url ?? '/', 'http://bridge')
+  } catch {
+    return null
   }
 }
 
