@@ -69,8 +69,13 @@ export function startAppLink(options: AppLinkOptions): AppLink {
     if (batch.events.length === 0 && batch.summaries.length === 0) return false
     const body: SpoolBatch = { bridgeId: options.bridgeId, ...batch }
     const reply = spoolReplySchema.parse(await call('POST', '/api/bridge/spool', JSON.stringify(body)))
-    await options.spool.confirm({ event: reply.confirmedEvent, summary: reply.confirmedSummary })
-    return batch.events.length === batchLimits.events || batch.summaries.length === batchLimits.summaries
+    await options.spool.settle(reply)
+    if (reply.continueAfter) options.log.warn(reply.continueAfter, 'The app has these numbers for others')
+    const hasMoved =
+      reply.confirmedEvent >= batch.oldest.event || reply.confirmedSummary >= batch.oldest.summary
+    const isFull =
+      batch.events.length === batchLimits.events || batch.summaries.length === batchLimits.summaries
+    return isFull && hasMoved
   }
 
   /** Does the work until it says that it is done or the link is closed, with back-off while it fails. */

@@ -4,6 +4,7 @@ import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import {
   configurationSchema,
   type SpoolBatch,
+  type SpoolReply,
   type Summary,
   spoolBatchSchema,
 } from '#app/protocol/commands.ts'
@@ -27,9 +28,9 @@ export type Spool = {
   addEvents(events: readonly Omit<BenchEvent, 'sequence'>[]): Promise<BenchEvent[]>
   addSummaries(summaries: readonly UnnumberedSummary[]): Promise<void>
   /** The oldest that are not confirmed. */
-  batch(limits: { events: number; summaries: number }): Promise<Pick<SpoolBatch, 'events' | 'summaries'>>
-  /** `upTo` as the app says it, for each sequence. */
-  confirm(upTo: { event: number; summary: number }): Promise<void>
+  batch(limits: { events: number; summaries: number }): Promise<Omit<SpoolBatch, 'bridgeId'>>
+  /** Drops what the app confirms, and numbers the rest anew where it says so. */
+  settle(reply: SpoolReply): Promise<void>
   configuration(): Promise<BenchConfig[] | null>
   keepConfiguration(benches: readonly BenchConfig[]): Promise<void>
   revocations(): Promise<Map<string, number>>
@@ -69,26 +70,32 @@ export async function openSpool(url: string): Promise<Spool> {
       sequence: Number(sequence),
     }))
   }
-  /** What is confirmed goes. A number that was never given here is of a former spool: numbering goes on behind it. */
-  const confirmIn = async (table: 'events' | 'summaries', upTo: number) => {
+  const highestGiven = async (table: 'events' | 'summaries'): Promise<number> => {
     const given = await client.execute({
       sql: 'SELECT seq FROM sqlite_sequence WHERE name = ?',
       args: [table],
     })
-    const highest = Number(given.rows[0]?.seq ?? 0)
-    if (upTo <= highest) {
-      await client.execute({ sql: `DELETE FROM ${table} WHERE sequence <= ?`, args: [upTo] })
-      return
-    }
-    const args = [upTo, table]
+    return Number(given.rows[0]?.seq ?? 0)
+  }
+  const oldest = async (table: 'events' | 'summaries'): Promise<number> => {
+    const result = await client.execute(`SELECT min(sequence) AS oldest FROM ${table}`)
+    return Number(result.rows[0]?.oldest ?? (await highestGiven(table)) + 1)
+  }
+  const dropConfirmed = (table: 'events' | 'summaries', upTo: number) =>
+    client.execute({ sql: `DELETE FROM ${table} WHERE sequence <= ?`, args: [upTo] })
+  /** Numbers what is left anew, in its order, behind a number. */
+  const renumber = async (table: 'events' | 'summaries', after: number) => {
+    const shift = after + 1 - (await oldest(table))
+    const highest = await highestGiven(table)
+    if (shift <= 0) return
     await client.batch(
       [
         // In two steps, since numbers must not meet on the way.
         { sql: `UPDATE ${table} SET sequence = -sequence`, args: [] },
-        { sql: `UPDATE ${table} SET sequence = ? - sequence`, args: [upTo] },
+        { sql: `UPDATE ${table} SET sequence = ? - sequence`, args: [shift] },
         highest === 0
-          ? { sql: 'INSERT INTO sqlite_sequence (seq, name) VALUES (?, ?)', args }
-          : { sql: 'UPDATE sqlite_sequence SET seq = seq + ? WHERE name = ?', args },
+          ? { sql: 'INSERT INTO sqlite_sequence (seq, name) VALUES (?, ?)', args: [shift, table] }
+          : { sql: 'UPDATE sqlite_sequence SET seq = seq + ? WHERE name = ?', args: [shift, table] },
       ],
       'write',
     )
@@ -105,13 +112,16 @@ export async function openSpool(url: string): Promise<Spool> {
       }),
     batch: (limits) =>
       inTurn(async () => ({
+        oldest: { event: await oldest('events'), summary: await oldest('summaries') },
         events: z.array(spoolBatchSchema.shape.events.element).parse(await rows('events', limits.events)),
         summaries: (await rows('summaries', limits.summaries)) as Summary[],
       })),
-    confirm: ({ event, summary }) =>
+    settle: ({ confirmedEvent, confirmedSummary, continueAfter }) =>
       inTurn(async () => {
-        await confirmIn('events', event)
-        await confirmIn('summaries', summary)
+        await dropConfirmed('events', confirmedEvent)
+        await dropConfirmed('summaries', confirmedSummary)
+        if (continueAfter?.event !== undefined) await renumber('events', continueAfter.event)
+        if (continueAfter?.summary !== undefined) await renumber('summaries', continueAfter.summary)
       }),
     configuration: () =>
       inTurn(async () => {

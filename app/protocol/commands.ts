@@ -108,14 +108,28 @@ export type Summary = z.infer<typeof summarySchema>
 /**
  * POST /api/bridge/spool at the app. Each of the two sequences begins at 1 and rises without gaps. The app ignores what
  * it has and confirms the highest number up to which it has all; 0 is none.
+ *
+ * `oldest` are the lowest numbers that the bridge still holds, or the next it will give. What is below was confirmed once
+ * and cannot be sent again: an app that has not got it, as after a database was restored, notes the gap and goes on.
  */
 export const spoolBatchSchema = z.object({
-  bridgeId: z.string(),
-  events: z.array(benchEventSchema),
-  summaries: z.array(summarySchema),
+  bridgeId: z.string().min(1).max(100),
+  oldest: z.object({ event: z.int().positive(), summary: z.int().positive() }),
+  events: z.array(benchEventSchema).max(1000),
+  summaries: z.array(summarySchema).max(5000),
 })
 export type SpoolBatch = z.infer<typeof spoolBatchSchema>
-export const spoolReplySchema = z.object({ confirmedEvent: z.int(), confirmedSummary: z.int() })
+
+/**
+ * `continueAfter` is there when numbers of the batch stand at the app for something else, as after the bridge lost its
+ * spool: the app took nothing from that number on, and the bridge numbers what is not confirmed anew, behind it.
+ */
+export const spoolReplySchema = z.object({
+  confirmedEvent: z.int(),
+  confirmedSummary: z.int(),
+  continueAfter: z.object({ event: z.int().optional(), summary: z.int().optional() }).optional(),
+})
+export type SpoolReply = z.infer<typeof spoolReplySchema>
 
 /** What a ticket says. Signed by the app; opens a connection within one minute of its making. */
 export const ticketSchema = z.object({

@@ -61,7 +61,12 @@ describe('The one writer of the database', () => {
     const cookie = (await startSession(student.id)).split(';')[0] ?? ''
     const dark = formRequest('/room-light', { roomLight: 'dark' }, { Cookie: cookie })
     const batch = (first: number) =>
-      storeBatch(db, { bridgeId: 'room-1', events: events(first, 600), summaries: [] })
+      storeBatch(db, {
+        bridgeId: 'room-1',
+        oldest: { event: 1, summary: 1 },
+        events: events(first, 600),
+        summaries: [],
+      })
 
     const startedAt = performance.now()
     await Promise.all([

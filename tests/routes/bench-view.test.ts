@@ -16,6 +16,9 @@ import { type ClassSite, openClassSite } from '#tests/support/class-site.ts'
 import { ownDatabaseUrl, routeArgs, routeContext } from '#tests/support/database.ts'
 import { freePort } from '#tests/support/processes.ts'
 
+/** Of a bridge that still holds all. */
+const oldest = { event: 1, summary: 1 }
+
 let site: ClassSite
 beforeAll(async () => {
   vi.stubEnv('DATABASE_URL', ownDatabaseUrl())
@@ -133,6 +136,7 @@ describe('The log of a bench', () => {
   beforeEach(async () => {
     await site.db.delete(benchCommands)
     await storeBatch(site.db, {
+      oldest,
       bridgeId: 'room-1',
       events: [
         event(1, { ...by(site.student), sentence: 'Kofi set the anode.' }),
@@ -224,7 +228,7 @@ describe('The log of a bench', () => {
     const events = Array.from({ length: 120 }, (_, index) =>
       event(index + 1, { at: second(100), kind: 'warning' }),
     )
-    await storeBatch(site.db, { bridgeId: 'room-2', events, summaries: [] })
+    await storeBatch(site.db, { bridgeId: 'room-2', oldest, events, summaries: [] })
     const page = async (number: string) => {
       const request = new Request(`http://127.0.0.1:3000/benches/bench-1/log?page=${number}`)
       return log(routeArgs(request, routeContext(site.db, site.technician), { benchId: 'bench-1' }))

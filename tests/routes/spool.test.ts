@@ -9,7 +9,7 @@ import { demoBenches } from '#app/db/demo-benches.ts'
 import { benchEvents, channelSummaries } from '#app/db/schema.ts'
 import { seedDemo } from '#app/db/seed.server.ts'
 import type { Summary } from '#app/protocol/commands.ts'
-import { configurationSchema } from '#app/protocol/commands.ts'
+import { configurationSchema, spoolBatchSchema } from '#app/protocol/commands.ts'
 import type { BenchEvent } from '#app/protocol/messages.ts'
 import { loader as configuration } from '#app/routes/api/bridge-configuration.ts'
 import { action } from '#app/routes/api/bridge-spool.ts'
@@ -50,8 +50,11 @@ const summary = (sequence: number): Summary => ({
 const range = (first: number, last: number) =>
   Array.from({ length: Math.max(0, last - first + 1) }, (_, index) => first + index)
 
+/** Of a bridge that has never been told to forget anything. */
+const oldest = { event: 1, summary: 1 }
+
 const send = (bridgeId: string, events: number[], summaries: number[] = []) =>
-  storeBatch(db, { bridgeId, events: events.map(event), summaries: summaries.map(summary) })
+  storeBatch(db, { bridgeId, oldest, events: events.map(event), summaries: summaries.map(summary) })
 
 const storedEvents = async (bridgeId: string) =>
   (
@@ -96,12 +99,28 @@ describe('A batch of the bridge’s spool', () => {
     expect(await send('room-d', range(21, 30))).toMatchObject({ confirmedEvent: 40 })
   })
 
-  it('does not change what is here under the same number', async () => {
-    await send('room-e', [1])
-    const changed = { ...event(1), sentence: 'Something else.' }
-    await storeBatch(db, { bridgeId: 'room-e', events: [changed], summaries: [] })
-    const [row] = await db.select().from(benchEvents).where(eq(benchEvents.bridgeId, 'room-e'))
-    expect(row?.sentence).toBe('Event 1.')
+  it('that has numbers of what is here for something else changes and confirms none of that, and says where to go on', async () => {
+    await send('room-e', range(1, 5), range(1, 7))
+    const changed = range(4, 6).map((sequence) => ({ ...event(sequence), sentence: 'Something else.' }))
+    const batch = {
+      bridgeId: 'room-e',
+      oldest,
+      events: [...range(2, 3).map(event), ...changed],
+      summaries: [],
+    }
+    expect(await storeBatch(db, batch)).toEqual({
+      confirmedEvent: 3,
+      confirmedSummary: 7,
+      continueAfter: { event: 5 },
+    })
+    const other = { ...summary(2), mean: 7 }
+    expect(await storeBatch(db, { bridgeId: 'room-e', oldest, events: [], summaries: [other] })).toEqual({
+      confirmedEvent: 5,
+      confirmedSummary: 1,
+      continueAfter: { summary: 7 },
+    })
+    const rows = await db.select().from(benchEvents).where(eq(benchEvents.bridgeId, 'room-e'))
+    expect(rows.map(({ sentence }) => sentence)).toEqual(range(1, 5).map((number) => `Event ${number}.`))
   })
 
   it('is of one bridge: another’s numbers are its own', async () => {
@@ -144,10 +163,27 @@ describe('A batch of the bridge’s spool', () => {
   it('that fails half way leaves neither rows nor a mark', async () => {
     const bad = { ...summary(2), mean: Number.NaN }
     await expect(
-      storeBatch(db, { bridgeId: 'room-i', events: [event(1)], summaries: [summary(1), bad] }),
+      storeBatch(db, { bridgeId: 'room-i', oldest, events: [event(1)], summaries: [summary(1), bad] }),
     ).rejects.toThrow()
     expect(await storedEvents('room-i')).toEqual([])
     expect(await send('room-i', [1], [1, 2])).toEqual({ confirmedEvent: 1, confirmedSummary: 2 })
+  })
+
+  it('takes no more than a bridge ever sends at once, and no less than its name and what it holds', () => {
+    const good = { bridgeId: 'room-1', oldest, events: [], summaries: [] }
+    expect(spoolBatchSchema.safeParse(good).success).toBe(true)
+    for (const over of [
+      { events: range(1, 1001).map(event) },
+      { summaries: range(1, 5001).map(summary) },
+      { bridgeId: '' },
+      { bridgeId: 'x'.repeat(101) },
+      { oldest: { event: 0, summary: 1 } },
+      { oldest: undefined },
+    ])
+      expect(
+        spoolBatchSchema.safeParse({ ...good, ...over }).success,
+        JSON.stringify(over).slice(0, 50),
+      ).toBe(false)
   })
 })
 
@@ -157,7 +193,7 @@ describe('The spool’s route', () => {
   const signed = (body: string, over: { secret?: string; now?: number; path?: string } = {}) =>
     signRequest({ method: 'POST', path: '/api/bridge/spool', body, secret, ...over })
   const batch = (sequence: number) =>
-    JSON.stringify({ bridgeId: 'route', events: [event(sequence)], summaries: [] })
+    JSON.stringify({ bridgeId: 'route', oldest, events: [event(sequence)], summaries: [] })
   const call = async (request: Request) => {
     const result = await action(routeArgs(request, routeContext(db), {})).catch((thrown: unknown) => thrown)
     if (!(result instanceof Response)) throw result
@@ -195,14 +231,16 @@ describe('The spool’s route', () => {
     })
   })
 
-  it.each(['', 'no json', '{}', '{"bridgeId":"route","events":[{"sequence":-1}],"summaries":[]}'])(
-    'answers 400 with the reason to the signed body %j',
-    async (body) => {
-      const { status, body: reply } = await call(post(body, signed(body)))
-      expect(status).toBe(400)
-      expect(reply.reason).toBeTruthy()
-    },
-  )
+  it.each([
+    '',
+    'no json',
+    '{}',
+    '{"bridgeId":"route","oldest":{"event":1,"summary":1},"events":[{"sequence":-1}],"summaries":[]}',
+  ])('answers 400 with the reason to the signed body %j', async (body) => {
+    const { status, body: reply } = await call(post(body, signed(body)))
+    expect(status).toBe(400)
+    expect(reply.reason).toBeTruthy()
+  })
 })
 
 describe('The configuration for the bridge', () => {

@@ -1,12 +1,15 @@
 import { createServer } from 'node:http'
 import type { AddressInfo } from 'node:net'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
-import { type SpoolBatch, spoolBatchSchema } from '#app/protocol/commands.ts'
+import { type SpoolBatch, type SpoolReply, spoolBatchSchema } from '#app/protocol/commands.ts'
 import type { BenchEvent } from '#app/protocol/messages.ts'
 import { signatureHeaders } from '#app/protocol/signing.ts'
 import { sign } from './bridge-signing.ts'
 
-/** A real HTTP server that answers the bridge as the app does: it ignores what it has and confirms up to the first gap. */
+/**
+ * A real HTTP server that answers the bridge as the app does: it ignores what it has and confirms up to the first gap, or
+ * up to the first number that it has for something else, and says behind which number to go on.
+ */
 export async function startReceiver(benches: BenchConfig[], port = 0) {
   const events = new Map<number, BenchEvent>()
   const summaries = new Map<number, SpoolBatch['summaries'][number]>()
@@ -42,18 +45,23 @@ export async function startReceiver(benches: BenchConfig[], port = 0) {
       return
     }
     const batch = spoolBatchSchema.parse(JSON.parse(body))
-    for (const event of batch.events) {
-      const had = events.get(event.sequence)
-      if (had && JSON.stringify(had) !== JSON.stringify(event))
-        failures.push(`Event ${event.sequence} came with two contents`)
-      if (!had) events.set(event.sequence, event)
-    }
-    for (const summary of batch.summaries) summaries.set(summary.sequence, summary)
+    const otherEvent = takeNew(events, batch.events)
+    const otherSummary = takeNew(summaries, batch.summaries)
+    if (otherEvent !== null) failures.push(`Event ${otherEvent} came with two contents`)
     if (behaviour.mode === 'store-and-drop') {
       request.socket.destroy()
       return
     }
-    response.end(JSON.stringify({ confirmedEvent: upToGap(events), confirmedSummary: upToGap(summaries) }))
+    const reply: SpoolReply = {
+      confirmedEvent: otherEvent === null ? upToGap(events) : otherEvent - 1,
+      confirmedSummary: otherSummary === null ? upToGap(summaries) : otherSummary - 1,
+    }
+    if (otherEvent !== null || otherSummary !== null)
+      reply.continueAfter = {
+        ...(otherEvent !== null && { event: Math.max(...events.keys()) }),
+        ...(otherSummary !== null && { summary: Math.max(...summaries.keys()) }),
+      }
+    response.end(JSON.stringify(reply))
   })
   await new Promise<void>((resolve) => server.listen(port, '127.0.0.1', resolve))
   return {
@@ -68,5 +76,14 @@ export async function startReceiver(benches: BenchConfig[], port = 0) {
         server.closeAllConnections()
       }),
   }
+}
+/** Keeps what is new up to the first number that is here for something else, and answers with that number. */
+function takeNew<Row extends { sequence: number }>(known: Map<number, Row>, rows: Row[]): number | null {
+  for (const row of rows) {
+    const had = known.get(row.sequence)
+    if (had && JSON.stringify(had) !== JSON.stringify(row)) return row.sequence
+    if (!had) known.set(row.sequence, row)
+  }
+  return null
 }
 export type Receiver = Awaited<ReturnType<typeof startReceiver>>
