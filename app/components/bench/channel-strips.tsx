@@ -7,7 +7,7 @@ import { fixed } from '../figures.ts'
 import { Quantity } from '../quantity.tsx'
 import { LastMinute } from './last-minute.tsx'
 
-export type Row = { channel: Channel; label: string; unit: string; decimals: number; leastRange: number }
+export type Row = { channel: Channel; label: string; unit: string; decimals: number; tolerance: number }
 
 const spanSeconds = 60
 
@@ -20,27 +20,33 @@ export function ChannelStrips({ config, state }: { config: BenchConfig; state: B
       label: 'anode',
       unit: 'V',
       decimals: 2,
-      leastRange: config.tolerance.anodeVolts * 8,
+      tolerance: config.tolerance.anodeVolts,
     },
     {
       channel: 'coilAmps',
       label: 'coils',
       unit: 'A',
       decimals: 3,
-      leastRange: config.tolerance.coilAmps * 8,
+      tolerance: config.tolerance.coilAmps,
     },
     {
       channel: 'coilCelsius',
       label: 'coil temp',
       unit: '°C',
       decimals: 1,
-      leastRange: config.tolerance.coilCelsius * 4,
+      tolerance: config.tolerance.coilCelsius,
     },
   ]
   return (
     <div>
-      {rows.map((row) => (
-        <Strip key={row.channel} row={row} config={config} state={state} />
+      {rows.map((row, index) => (
+        <Strip
+          key={row.channel}
+          row={row}
+          config={config}
+          state={state}
+          hasTimeAxis={index === rows.length - 1}
+        />
       ))}
       {dropped > 0 && (
         <p className="pt-1 text-[12.5px] text-caution">
@@ -52,16 +58,19 @@ export function ChannelStrips({ config, state }: { config: BenchConfig; state: B
   )
 }
 
-function Strip({ row, config, state }: { row: Row; config: BenchConfig; state: BenchState | null }) {
+type StripProps = { row: Row; config: BenchConfig; state: BenchState | null; hasTimeAxis: boolean }
+
+function Strip({ row, config, state, hasTimeAxis }: StripProps) {
   const latest = useLatest(config.benchId, row.channel)
   const isLive = useLink().kind === 'connected'
   const status = isLive ? state?.channels[row.channel] : undefined
   const word = status?.state ?? 'stale'
+  const isSteady = word === 'settled' || word === 'drifting' || word === 'noisy'
   const reason = status?.reason ?? (isLive ? 'no reading yet' : 'no link to the bridge')
   return (
-    <div className="grid grid-cols-[1fr_auto] items-center gap-x-4 gap-y-1 border-b border-rule py-2 md:grid-cols-[140px_minmax(0,1fr)_150px]">
+    <div className="grid grid-cols-[1fr_auto] items-center gap-x-4 gap-y-1 border-b border-rule py-1.5 md:grid-cols-[130px_minmax(0,1fr)_140px] xl:grid-cols-[120px_minmax(0,1fr)_200px]">
       <Quantity
-        value={latest?.value}
+        value={word === 'stale' ? null : latest?.value}
         unit={row.unit}
         decimals={row.decimals}
         className="text-right text-[21px] font-bold tracking-tight text-live max-md:text-left"
@@ -73,11 +82,13 @@ function Strip({ row, config, state }: { row: Row; config: BenchConfig; state: B
           channel={row.channel}
           spanSeconds={spanSeconds}
           windowSeconds={word === 'settled' ? config.window.seconds : null}
-          leastRange={row.leastRange}
+          steadySeconds={isSteady ? config.window.seconds : null}
+          tolerance={row.tolerance}
+          hasTimeAxis={hasTimeAxis}
           text={`${row.label} over the last minute: now ${fixed(latest?.value, row.decimals)} ${row.unit}, ${word}, ${reason}`}
         />
       </div>
-      <div className="text-[12.5px] leading-snug">
+      <div className="text-[12.5px] leading-snug max-md:text-right md:min-h-16">
         <span className="block text-ink-soft max-md:inline">{row.label} </span>
         <b className="block font-medium max-md:inline" data-channel-state={row.channel}>
           {word}
