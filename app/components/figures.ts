@@ -14,6 +14,11 @@ export function withUncertainty(value: number, standardUncertainty: number): str
   return standardUncertainty > 0 ? formatConcise(value, standardUncertainty) : fixed(value, 3)
 }
 
+/** 'just now', '3 s ago'. */
+export function ago(seconds: number): string {
+  return seconds < 1 ? 'just now' : `${age(seconds)} ago`
+}
+
 /** '3 s', '2 min', '1 h 5 min': how long ago. */
 export function age(seconds: number): string {
   const whole = Math.max(0, Math.floor(seconds))

@@ -1,17 +1,11 @@
 import { useSyncExternalStore } from 'react'
 
+type Parts = 'time' | 'date and time' | 'date and seconds'
+
 const never = () => () => {}
 
 /** A moment on this browser's clock; until the page has its script, and without one, in UTC and so marked. */
-export function LocalTime({
-  iso,
-  parts,
-  className,
-}: {
-  iso: string
-  parts: 'time' | 'date and time'
-  className?: string
-}) {
+export function LocalTime({ iso, parts, className }: { iso: string; parts: Parts; className?: string }) {
   const isOnServer = useSyncExternalStore(
     never,
     () => false,
@@ -29,6 +23,7 @@ function localIso(date: Date): string {
   return new Date(date.getTime() - date.getTimezoneOffset() * 60_000).toISOString()
 }
 
-function shorten(iso: string, parts: 'time' | 'date and time'): string {
-  return parts === 'time' ? iso.slice(11, 19) : `${iso.slice(0, 10)} ${iso.slice(11, 16)}`
+function shorten(iso: string, parts: Parts): string {
+  if (parts === 'time') return iso.slice(11, 19)
+  return `${iso.slice(0, 10)} ${iso.slice(11, parts === 'date and time' ? 16 : 19)}`
 }

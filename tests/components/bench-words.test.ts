@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest'
 import { captureWaitsFor } from '#app/components/bench/capture-words.ts'
-import { foldContacts, whatStops } from '#app/components/bench/contact-words.ts'
+import { firstOpen, foldContacts, whatStops } from '#app/components/bench/contact-words.ts'
 import { setpointProgress } from '#app/components/bench/setpoint-progress.ts'
-import { resetWaitsFor, shutdownSentence } from '#app/components/bench/shutdown-words.ts'
-import { age } from '#app/components/figures.ts'
+import { lostLineSentence, resetWaitsFor, shutdownSentence } from '#app/components/bench/shutdown-words.ts'
+import { age, ago } from '#app/components/figures.ts'
 import { liveState } from './bench-state.ts'
 
 const thin = '\u2009'
@@ -14,10 +14,29 @@ const opened = (name: string, reason: string) =>
   )
 
 describe('the interlock chain in words', () => {
+  const linked = { isLinked: true }
+
   it('gives the first open contact, in one sentence', () => {
     const contacts = opened('enclosure', 'The enclosure is open: close it.')
-    expect(whatStops(liveState({ contacts }))).toBe('What stops the anode: the enclosure is open: close it.')
-    expect(whatStops(liveState())).toBe('Nothing stops the anode: every contact is closed.')
+    expect(whatStops(liveState({ contacts }), linked)).toEqual({
+      permit: 'Anode not permitted.',
+      why: 'The enclosure is open: close it.',
+    })
+    expect(whatStops(liveState(), linked)).toEqual({
+      permit: 'Anode permitted.',
+      why: 'Every contact is closed.',
+    })
+    expect(whatStops(liveState(), { isLinked: false }).permit).toBe('Permit unknown.')
+  })
+
+  it('speaks of the lost line first, since nothing behind it is known', () => {
+    const contacts = liveState().contacts.map((contact) =>
+      contact.name === 'warm-up' || contact.name === 'signal'
+        ? { ...contact, closed: false, reason: `${contact.name}.` }
+        : contact,
+    )
+    expect(firstOpen({ contacts, phase: 'lost' })?.name).toBe('signal')
+    expect(firstOpen({ contacts, phase: 'warming' })?.name).toBe('warm-up')
   })
 
   it('never folds an open contact away', () => {
@@ -52,6 +71,17 @@ describe('a shutdown in words', () => {
     })
     expect(shutdownSentence(state, 1003)).toBe(
       `Off commanded 3${thin}s ago, anode voltage unknown: treat as live. Not confirmed: coils. Treat it as on.`,
+    )
+  })
+
+  it('names the lost line, and what that means for the outputs', () => {
+    const lost = (ports: Parameters<typeof lostLineSentence>[0]['ports']) =>
+      lostLineSentence(liveState({ ports }))
+    expect(lost({ supply: 'lost', 'anode-meter': 'open' })).toMatch(
+      /^The line to the supply is lost\. The supply switches its outputs off by itself/,
+    )
+    expect(lost({ supply: 'open', 'anode-meter': 'lost', 'coil-meter': 'opening' })).toMatch(
+      /^The line to the anode meter and coil meter is lost\. The bridge commands the outputs off/,
     )
   })
 
@@ -118,6 +148,10 @@ describe('capture', () => {
 })
 
 describe('an age', () => {
+  it('is just now within the first second, also when the clocks disagree', () => {
+    expect([ago(-2), ago(0.9), ago(1)]).toEqual(['just now', 'just now', `1${thin}s ago`])
+  })
+
   it('counts seconds, then minutes, then hours', () => {
     expect([age(-1), age(59.9), age(150), age(3900)]).toEqual([
       `0${thin}s`,

@@ -40,11 +40,11 @@ test('A refused setpoint says which limit, whose it is and by how much, beside i
 
   await test.step('with the enclosure open, and with the emergency stop pressed', async () => {
     await askSimulator(site.simulatorTest, 'enclosure', benchId, { open: true })
-    await expect(page.getByText(/What stops the anode: the enclosure is open/)).toBeVisible()
+    await expect(page.getByText(/Anode not permitted\. The enclosure is open: close it/)).toBeVisible()
     await set(page, { volts: 100 })
     await says(/enclosure is open: close it/i)
     await askSimulator(site.simulatorTest, 'enclosure', benchId, { open: false })
-    await expect(page.getByText(/Nothing stops the anode/)).toBeVisible()
+    await expect(page.getByText(/Anode permitted\. Every contact is closed/)).toBeVisible()
     await page.keyboard.press('Escape')
     await expect(page.getByRole('button', { name: 'Heater on' })).toBeVisible()
     await askSimulator(site.simulatorTest, 'e-stop', benchId, { in: true })

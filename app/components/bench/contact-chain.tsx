@@ -7,11 +7,14 @@ export function ContactChain({ contacts }: { contacts: BenchState['contacts'] })
   const [isUnfolded, setUnfolded] = useState(false)
   const { drawn, folded } = foldContacts(contacts, isUnfolded)
   return (
-    <ul aria-label="Interlock chain" className="flex flex-wrap items-start gap-y-2 pt-1 lg:pt-7">
+    <ul
+      aria-label="Interlock chain"
+      className="grid grid-cols-3 items-start gap-y-2 sm:flex sm:flex-wrap xl:pt-5"
+    >
       {drawn.map((contact) => (
         <li
           key={contact.name}
-          className={`w-[72px] text-center text-[11.5px] leading-tight ${contact.closed ? 'text-ink-soft' : 'font-medium text-caution'}`}
+          className={`min-w-16 flex-1 text-center text-[11px] leading-tight ${contact.closed ? 'text-ink-soft' : 'font-medium text-caution'}`}
         >
           <MakeContact isClosed={contact.closed} />
           <span className="block">{contactLabels[contact.name]}</span>
@@ -20,13 +23,13 @@ export function ContactChain({ contacts }: { contacts: BenchState['contacts'] })
         </li>
       ))}
       {contacts.length > 0 && (folded > 0 || isUnfolded) && (
-        <li className="w-[72px] text-center text-[11.5px] leading-tight text-ink-soft">
+        <li className="min-w-16 flex-1 text-center text-[11px] leading-tight text-ink-soft">
           {folded > 0 && <MakeContact isClosed />}
           <button
             type="button"
             aria-expanded={isUnfolded}
             onClick={() => setUnfolded(!isUnfolded)}
-            className={`cursor-pointer underline decoration-edge underline-offset-2 ${folded > 0 ? '' : 'mt-[26px]'}`}
+            className={`cursor-pointer px-1 underline decoration-edge underline-offset-2 touch:min-h-12 touch:min-w-16 ${folded > 0 ? '' : 'mt-[26px]'}`}
           >
             {folded > 0 ? `${folded} closed` : 'fold'}
           </button>
@@ -36,23 +39,28 @@ export function ContactChain({ contacts }: { contacts: BenchState['contacts'] })
   )
 }
 
-/** Make contact of IEC 60617, on its side, in the run of the line. */
+/** Make contact of IEC 60617, on its side, in the run of the line. Its leads run on to the neighbours'. */
 function MakeContact({ isClosed }: { isClosed: boolean }) {
   return (
-    <svg
-      viewBox="0 0 72 26"
-      className="block h-[26px] w-full"
-      preserveAspectRatio="none"
-      fill="none"
-      stroke="currentColor"
-      strokeWidth="2"
-      strokeLinecap="round"
-      aria-hidden="true"
-    >
-      <path d="M0 18H23M49 18H72" />
-      <path d={isClosed ? 'M23 18L49 16' : 'M23 18L45 5'} />
-      <circle cx="23" cy="18" r="2.2" fill="currentColor" stroke="none" />
-      <circle cx="49" cy="18" r="2.2" fill="currentColor" stroke="none" />
-    </svg>
+    <span aria-hidden="true" className="flex h-[26px]">
+      <Lead />
+      <svg
+        width="30"
+        height="26"
+        viewBox="0 0 30 26"
+        fill="none"
+        stroke="currentColor"
+        strokeWidth="2"
+        strokeLinecap="round"
+        aria-hidden="true"
+      >
+        <path d={isClosed ? 'M2 18L28 16' : 'M2 18L24 5'} />
+        <circle cx="2.2" cy="18" r="2.2" fill="currentColor" stroke="none" />
+        <circle cx="27.8" cy="18" r="2.2" fill="currentColor" stroke="none" />
+      </svg>
+      <Lead />
+    </span>
   )
 }
+
+const Lead = () => <span className="mt-[17px] h-0.5 flex-1 bg-current" />

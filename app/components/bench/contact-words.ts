@@ -1,11 +1,10 @@
 import type { BenchState } from '#app/protocol/messages.ts'
 import type { ContactName } from '#app/safety/types.ts'
-import { lowerFirst } from './shutdown-words.ts'
 
 type Contact = BenchState['contacts'][number]
 
 export const contactLabels: Record<ContactName, string> = {
-  commissioned: 'commis-sioned',
+  commissioned: 'in service',
   'e-stop': 'e-stop',
   enclosure: 'enclosure',
   'warm-up': 'warm-up',
@@ -27,13 +26,26 @@ export function foldContacts(contacts: Contact[], isUnfolded: boolean): { drawn:
   return { drawn, folded: contacts.length - drawn.length }
 }
 
-/** One sentence: what stops the anode now. */
-export function whatStops(state: BenchState): string {
-  const open = state.contacts.find((contact) => !contact.closed)
-  if (!open)
-    return state.contacts.length
-      ? 'Nothing stops the anode: every contact is closed.'
-      : 'The bridge has not reported the interlock chain yet.'
-  const reason = open.reason ?? `${contactLabels[open.name]} is open, ${open.measured}.`
-  return `What stops the anode: ${lowerFirst(reason)}`
+/** The open contact that a person has to see to first; null when all are closed. With a line lost, that line. */
+export function firstOpen({ contacts, phase }: Pick<BenchState, 'contacts' | 'phase'>): Contact | null {
+  const open = contacts.filter((contact) => !contact.closed)
+  const lost = phase === 'lost' ? open.find(({ name }) => name === 'signal') : undefined
+  return lost ?? open[0] ?? null
+}
+
+/** Whether the chain permits the anode, and in one sentence what stops it. */
+export function whatStops(
+  state: BenchState,
+  { isLinked }: { isLinked: boolean },
+): { permit: string; why: string } {
+  if (!isLinked)
+    return { permit: 'Permit unknown.', why: 'The contacts are drawn as the bridge last told them.' }
+  if (state.contacts.length === 0)
+    return { permit: 'Permit unknown.', why: 'The bridge has not reported the interlock chain yet.' }
+  const open = firstOpen(state)
+  if (!open) return { permit: 'Anode permitted.', why: 'Every contact is closed.' }
+  return {
+    permit: 'Anode not permitted.',
+    why: open.reason ?? `${contactLabels[open.name]} is open, ${open.measured}.`,
+  }
 }

@@ -1,7 +1,7 @@
 import type { BenchView } from '#app/benches/bench-view.server.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import { hazardousVolts } from '#app/safety/types.ts'
-import { useBridgeSeconds, useLatest } from '#app/telemetry/telemetry.tsx'
+import { useBridgeSeconds, useLatest, useLink } from '#app/telemetry/telemetry.tsx'
 import { fixed } from '../figures.ts'
 import { ContactChain } from './contact-chain.tsx'
 import { whatStops } from './contact-words.ts'
@@ -16,17 +16,29 @@ type Props = { view: BenchView; state: BenchState; isAtControls: boolean }
 /** The path that the energy takes: heater, the interlock chain, anode, coils. What stops the anode stands below it. */
 export function EnergyPath({ view, state, isAtControls }: Props) {
   return (
-    <section aria-label="Energy path" className="grid gap-1.5">
-      <div className="grid gap-y-4 border-x-[3px] border-ink py-1 sm:grid-cols-2 lg:grid-cols-[minmax(9.5rem,.8fr)_auto_minmax(15rem,1fr)_minmax(15rem,1fr)]">
-        <HeaterStage view={view} state={state} isAtControls={isAtControls} />
-        <div className="px-4 sm:col-span-2 sm:row-start-2 lg:col-span-1 lg:row-start-auto lg:px-0">
-          <ContactChain contacts={state.contacts} />
-        </div>
-        <AnodeStage view={view} state={state} isAtControls={isAtControls} />
-        <CoilStage view={view} state={state} isAtControls={isAtControls} />
+    <section
+      aria-label="Energy path"
+      className="grid gap-y-4 border-x-[3px] border-ink py-1 sm:grid-cols-2 md:grid-cols-3 xl:grid-cols-[200px_minmax(0,1fr)_minmax(250px,19%)_minmax(250px,19%)]"
+    >
+      <HeaterStage view={view} state={state} isAtControls={isAtControls} />
+      <div className="grid min-w-0 content-start gap-y-2 px-4 sm:max-xl:col-span-full sm:max-xl:row-start-2 xl:px-0">
+        <ContactChain contacts={state.contacts} />
+        <WhatStops state={state} />
       </div>
-      <p>{whatStops(state)}</p>
+      <AnodeStage view={view} state={state} isAtControls={isAtControls} />
+      <CoilStage view={view} state={state} isAtControls={isAtControls} />
     </section>
+  )
+}
+
+/** What is stopping me, in one sentence. Room for two lines is kept, so that nothing below moves with its length. */
+function WhatStops({ state }: { state: BenchState }) {
+  const isLinked = useLink().kind === 'connected'
+  const { permit, why } = whatStops(state, { isLinked })
+  return (
+    <p className="leading-snug xl:min-h-[2.75em]">
+      <b className="font-medium">{permit}</b> {why}
+    </p>
   )
 }
 
@@ -61,6 +73,13 @@ function HeaterStage({ view, state, isAtControls }: Props) {
   )
 }
 
+/** With a line lost the anode can be measured and still not be commanded: it stays to be treated as live. */
+function anodeHazard(volts: number | null, phase: BenchState['phase']): string | null {
+  if (volts === null) return 'unknown: treat as live'
+  if (Math.abs(volts) > hazardousVolts) return 'hazardous'
+  return phase === 'lost' ? 'treat as live' : null
+}
+
 function AnodeStage({ view, state, isAtControls }: Props) {
   const volts = useFresh(state.benchId, 'anodeVolts')
   const { limits } = view.bench.config
@@ -78,9 +97,7 @@ function AnodeStage({ view, state, isAtControls }: Props) {
       value={volts}
       unit="V"
       decimals={1}
-      hazard={
-        volts === null ? 'unknown: treat as live' : Math.abs(volts) > hazardousVolts ? 'hazardous' : null
-      }
+      hazard={anodeHazard(volts, state.phase)}
       gauge={{
         label: 'Anode voltage',
         value: volts ?? 0,

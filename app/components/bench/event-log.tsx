@@ -2,10 +2,11 @@ import { href, Link } from 'react-router'
 import type { BenchView } from '#app/benches/bench-view.server.ts'
 import { useEvents } from '#app/telemetry/telemetry.tsx'
 import { LocalTime } from '../local-time.tsx'
+import { isRepetition, logSentence, namedBeside } from './log-words.ts'
 
 const shown = 8
 
-type Line = { key: string; at: string; sentence: string; personName: string | null }
+type Line = { key: string; at: string; kind: string; sentence: string; personName: string | null }
 
 /** What happened here last: the stored log, with what this page has heard since. */
 export function EventLog({ view }: { view: BenchView }) {
@@ -13,18 +14,24 @@ export function EventLog({ view }: { view: BenchView }) {
   const heard = events.map<Line>((event) => ({
     key: String(event.sequence),
     at: new Date(event.at * 1000).toISOString(),
+    kind: event.kind,
     sentence: event.sentence,
     personName: event.personName,
   }))
   const lines = mergeLog(
     view.log.map<Line>((entry) => ({ ...entry, key: `${entry.at} ${entry.kind} ${entry.sentence}` })),
     heard,
-  ).slice(0, shown)
+  )
+    .filter((line) => !isRepetition(line))
+    .slice(0, shown)
   return (
     <section aria-labelledby="log" className="min-w-0">
       <h2 id="log" className="mb-1 flex flex-wrap justify-between gap-3">
         <span className="font-medium">Log</span>
-        <Link to={href('/benches/:benchId/log', { benchId: view.bench.id })} className="link text-ink-soft">
+        <Link
+          to={href('/benches/:benchId/log', { benchId: view.bench.id })}
+          className="link-alone text-ink-soft"
+        >
           all of it
         </Link>
       </h2>
@@ -33,14 +40,23 @@ export function EventLog({ view }: { view: BenchView }) {
         {lines.map((line) => (
           <li key={line.key} className="flex gap-3 border-b border-rule py-1">
             <LocalTime iso={line.at} parts="time" className="text-ink-soft" />
-            <span className="min-w-0">
-              {line.sentence}
-              {line.personName && <span className="text-ink-soft"> {line.personName}</span>}
-            </span>
+            <LineWords line={line} />
           </li>
         ))}
       </ol>
     </section>
+  )
+}
+
+function LineWords({ line }: { line: Line }) {
+  const sentence = logSentence(line)
+  const name = namedBeside(sentence, line.personName)
+  return (
+    <span className="min-w-0">
+      {line.kind === 'trip' && <b className="tripped mr-1.5 px-1">Trip</b>}
+      {sentence}
+      {name && <span className="text-ink-soft"> {name}</span>}
+    </span>
   )
 }
 

@@ -4,6 +4,7 @@ import { readingBench } from '#app/benches/reading-bench.ts'
 import { formatConcise, formatExpanded, formatFixed } from '#app/metrology/format.ts'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
+import { useLink } from '#app/telemetry/telemetry.tsx'
 import { liveReading, sharesSentence } from './live-reading.ts'
 
 const benches = new Map<string, ReadingBench>()
@@ -26,18 +27,13 @@ function plusMinus(value: number, expandedUncertainty: number): string {
 /** e/m as it stands now, its standard uncertainty in parentheses, the expanded one below, and what gives how much of it. */
 export function LiveResult({ view, state }: { view: BenchView; state: BenchState | null }) {
   const { config } = view.bench
+  const isLinked = useLink().kind === 'connected'
   const isVirtual = config.picturePath !== null
   const live =
     state &&
     liveReading({ readings: view.readings, state, bench: benchOf(config), revision: config.revision })
-  if (!live) return <p className="text-ink-soft">e/m: waiting for the bridge.</p>
-  if (live.kind === 'none')
-    return (
-      <section aria-label="e/m">
-        <p className="text-ink-soft">e/m</p>
-        <p>{live.sentence}</p>
-      </section>
-    )
+  if (!live || !isLinked) return <NoResult sentence="Waiting for the bridge." />
+  if (live.kind === 'none') return <NoResult sentence={live.sentence} />
   const { value, standardUncertainty, expandedUncertainty, coverageFactor, groups } = live.result
   return (
     <section aria-label="e/m" className="min-w-0">
@@ -50,8 +46,17 @@ export function LiveResult({ view, state }: { view: BenchView; state: BenchState
       </p>
       <p className="text-ink-soft">
         {plusMinus(value, expandedUncertainty)} at 95 %, k = {formatFixed(coverageFactor, 1)}.{' '}
-        {sharesSentence(groups)}
+        {sharesSentence(groups).replaceAll(' %', '\u00a0%')}
       </p>
+    </section>
+  )
+}
+
+function NoResult({ sentence }: { sentence: string }) {
+  return (
+    <section aria-label="e/m">
+      <p className="text-ink-soft">e/m</p>
+      <p>{sentence}</p>
     </section>
   )
 }

@@ -1,25 +1,37 @@
 import type { BenchState } from '#app/protocol/messages.ts'
 import { type ContactName, hazardousVolts, type TripKind } from '#app/safety/types.ts'
-import { age, fixed, thinSpace } from '../figures.ts'
+import { listed } from '#app/safety/words.ts'
+import { ago, fixed, thinSpace } from '../figures.ts'
 
 /** What was commanded and what was measured since, with its age. It never says that a bench is safe. */
 export function shutdownSentence(state: BenchState, now: number | null): string {
   const measured = anodeSentence(state, now)
   const { shutdown } = state
   if (!shutdown) return capital(`${measured}.`)
-  const ago = now === null ? '' : ` ${age(now - shutdown.at)} ago`
+  const when = now === null ? '' : ` ${ago(now - shutdown.at)}`
   const open = shutdown.steps.filter(({ confirmed }) => !confirmed).map(({ output }) => output)
   const unconfirmed = open.length
     ? ` Not confirmed: ${open.join(', ')}. Treat ${open.length > 1 ? 'them' : 'it'} as on.`
     : ''
-  return `Off commanded${ago}, ${measured}.${unconfirmed}`
+  return `Off commanded${when}, ${measured}.${unconfirmed}`
 }
 
 function anodeSentence({ anodeMeasured }: BenchState, now: number | null): string {
   if (!anodeMeasured) return 'anode voltage unknown: treat as live'
-  const ago = now === null ? '' : ` ${age(now - anodeMeasured.at)} ago`
+  const when = now === null ? '' : ` ${ago(now - anodeMeasured.at)}`
   const hazard = Math.abs(anodeMeasured.volts) > hazardousVolts ? ', hazardous' : ''
-  return `anode ${fixed(anodeMeasured.volts, 1)}${thinSpace}V measured${ago}${hazard}`
+  return `anode ${fixed(anodeMeasured.volts, 1)}${thinSpace}V measured${when}${hazard}`
+}
+
+/** Which line is lost, what that means for the outputs, and what to do. */
+export function lostLineSentence({ ports }: BenchState): string {
+  const lost = Object.entries(ports).flatMap(([instrument, port]) =>
+    port === 'open' ? [] : [instrument.replace('-', ' ')],
+  )
+  const means = lost.includes('supply')
+    ? 'The supply switches its outputs off by itself when it hears nothing.'
+    : 'The bridge commands the outputs off and permits none until it answers.'
+  return `The line to the ${listed(lost) || 'instruments'} is lost. ${means} Check the cable and the instrument; the bridge keeps trying.`
 }
 
 /** 'Enclosure opened.' after a colon. */

@@ -2,7 +2,9 @@ import { href, Link } from 'react-router'
 import * as z from 'zod'
 import { findBenchLog, type LogEntry } from '../../benches/bench-log.server.ts'
 import { requireVisibleBench } from '../../benches/visible-benches.server.ts'
+import { logSentence } from '../../components/bench/log-words.ts'
 import { BenchFrame } from '../../components/bench-frame.tsx'
+import { LocalTime } from '../../components/local-time.tsx'
 import { databaseContext, personContext } from '../../context.ts'
 import type { Route } from './+types/log'
 
@@ -78,7 +80,7 @@ function Entries({ entries }: { entries: LogEntry[] }) {
     <table className="w-full border-collapse text-left max-sm:block">
       <thead className="text-[12.5px] text-ink-soft max-sm:sr-only">
         <tr className="border-b border-edge">
-          <th className="py-2 pr-6 font-medium">When (UTC)</th>
+          <th className="py-2 pr-6 font-medium">When</th>
           <th className="py-2 pr-6 font-medium">Who</th>
           <th className="py-2 pr-6 font-medium">What</th>
           <th className="py-2 font-medium">Outcome</th>
@@ -88,12 +90,12 @@ function Entries({ entries }: { entries: LogEntry[] }) {
         {entries.map((entry) => (
           <tr key={entry.id} className="border-b border-rule max-sm:block max-sm:py-2">
             <td className={`${cell} whitespace-nowrap text-ink-soft`}>
-              <time dateTime={entry.at}>{entry.at.slice(0, 19).replace('T', ' ')}</time>
+              <LocalTime iso={entry.at} parts="date and seconds" />
             </td>
             <td className={`${cell} whitespace-nowrap text-ink-soft`}>{entry.personName ?? 'the bench'}</td>
             <td className={`${cell} w-full`}>
               {entry.kind === 'trip' && <b className="tripped mr-2 px-1.5">Trip</b>}
-              {entry.sentence}
+              {logSentence(entry)}
             </td>
             <td className={`${cell} whitespace-nowrap`}>{outcomeOf(entry)}</td>
           </tr>
