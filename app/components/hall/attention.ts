@@ -18,16 +18,21 @@ export function benchSummary(state: BenchState | null): {
   return { attention: 'none', words: quietWords(state), rank: 3 }
 }
 
-function quietWords({ phase, controls, warmUp, channels }: BenchState): string {
-  const who = controls ? `${controls.name} · ` : ''
+function quietWords({ phase, warmUp, channels }: BenchState): string {
   if (phase === 'unconfigured') return 'not commissioned'
-  if (phase === 'off') return `${who}off`
+  if (phase === 'off') return 'off'
   if (phase === 'warming')
-    return `${who}warming ${Math.floor(warmUp.elapsedSeconds)} of ${Math.round(warmUp.requiredSeconds)} s`
-  if (phase === 'ready') return `${who}warm, anode off`
+    return `warming ${Math.floor(warmUp.elapsedSeconds)} of ${Math.round(warmUp.requiredSeconds)} s`
+  if (phase === 'ready') return 'warm, anode off'
   const states = [channels.anodeVolts?.state, channels.coilAmps?.state]
   const word = ['stale', 'noisy', 'drifting', 'settling'].find((it) => states.some((state) => state === it))
-  return `${who}${word ?? 'settled'}`
+  return word ?? 'settled'
+}
+
+/** Whether there is anything to make safe: an output that is on, or a bench of which nobody can tell. */
+export function mayBeOn(state: BenchState | null): boolean {
+  if (!state || state.phase === 'lost' || state.phase === 'tripped') return true
+  return state.heater.on || state.anode.on || state.coils.on
 }
 
 /** Benches by need of attention, then by name: 'Bench 2' before 'Bench 10'. */

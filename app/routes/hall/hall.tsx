@@ -84,12 +84,19 @@ function LinkLine() {
       {link.kind === 'refused' && <p className="hatch border border-caution px-3 py-2">{link.reason}</p>}
       {link.kind === 'reconnecting' && (
         <p className="hatch border border-caution px-3 py-2">
-          No word from the bridge. What is shown is old: treat every bench as live. Connecting again…
+          No word from the bridge: what is shown is old. Treat every bench as live. This page keeps trying;
+          the emergency stops need no link.
         </p>
       )}
       {report && <p className="border border-ink px-3 py-2">{report.sentence}</p>}
     </div>
   )
+}
+
+/** How much room a tile has: four rows of six fit on a 1080p screen, and three do not look lost on it. */
+function crowdOf(benches: number): 'few' | 'some' | 'many' {
+  if (benches <= 4) return 'few'
+  return benches <= 12 ? 'some' : 'many'
 }
 
 function Tiles({ benches, maySafe }: { benches: TileBench[]; maySafe: boolean }) {
@@ -101,7 +108,7 @@ function Tiles({ benches, maySafe }: { benches: TileBench[]; maySafe: boolean })
       </p>
     )
   return (
-    <div className="grid grid-cols-[repeat(auto-fill,minmax(min(290px,100%),1fr))] gap-3.5">
+    <div className="tiles" data-crowd={crowdOf(benches.length)}>
       {ordered.map((bench) => (
         <BenchTile key={bench.id} bench={bench} maySafe={maySafe} />
       ))}
