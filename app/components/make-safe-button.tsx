@@ -32,7 +32,12 @@ export function MakeSafeButton({ benchId, person }: Props) {
       className="button button-safe"
       aria-keyshortcuts={hasEscape ? 'Escape' : undefined}
     >
-      Make safe{hasEscape && <span aria-hidden="true">&nbsp;Esc</span>}
+      Make safe
+      {hasEscape && (
+        <span aria-hidden="true" className="max-sm:hidden">
+          &nbsp;Esc
+        </span>
+      )}
     </button>
   )
 }

@@ -13,29 +13,36 @@ type Props = {
   children: React.ReactNode
 }
 
-/** The header with the mark, the room light, the person and make safe; the page below it. */
+/** The header with the mark, the room light, the person and make safe; the page below it. Make safe is always in it. */
 export function PageFrame({ where, standing, makeSafe, children }: Props) {
   const person = useRouteLoaderData<typeof loader>('root')?.person
   return (
     <>
-      <header className="sticky top-0 z-50 flex flex-wrap items-center gap-x-5 gap-y-2 border-b border-rule bg-ground px-3 py-2.5 sm:px-6">
-        <Link to={href('/hall')} className="flex items-center gap-2 text-[17px] font-bold tracking-tight">
+      <header className="sticky top-0 z-50 flex flex-wrap items-center gap-x-5 gap-y-1 border-b border-rule bg-ground px-3 py-1.5 sm:px-6 sm:py-2.5">
+        {/* First for the keyboard, last for the eye; on a phone in the first of two rows. */}
+        {makeSafe && <div className="order-3 sm:order-6">{makeSafe}</div>}
+        <Link
+          to={href('/hall')}
+          className="order-1 flex items-center gap-2 text-[17px] font-bold tracking-tight touch:min-h-12"
+        >
           <Mark />
-          <span className="max-[420px]:sr-only">Coilside</span>
+          <span className="max-sm:sr-only">Coilside</span>
         </Link>
-        <div className="min-w-0">{where}</div>
-        <div className="ml-auto flex flex-wrap items-center gap-x-5 gap-y-2">
+        <div className="order-2 min-w-0 max-sm:flex-1 sm:mr-auto">{where}</div>
+        {person && (
+          <Link
+            to={href('/account')}
+            className="order-4 max-sm:mr-auto max-sm:text-[12.5px] sm:order-5 touch:py-3"
+          >
+            <b className="font-medium">{person.name}</b>{' '}
+            <span className="text-ink-soft">
+              {person.role}
+              {standing && <span className="max-sm:sr-only"> · {standing}</span>}
+            </span>
+          </Link>
+        )}
+        <div className="order-5 sm:order-4">
           <RoomLightSwitch />
-          {person && (
-            <Link to={href('/account')} className="max-sm:order-last">
-              <b className="font-medium">{person.name}</b>{' '}
-              <span className="text-ink-soft">
-                {person.role}
-                {standing && <> · {standing}</>}
-              </span>
-            </Link>
-          )}
-          {makeSafe}
         </div>
       </header>
       <main className="px-3 py-4 sm:px-6">{children}</main>

@@ -37,7 +37,7 @@ export function RoomLightSwitch() {
             name="roomLight"
             value={value}
             aria-pressed={light === value}
-            className="min-h-8 cursor-pointer px-2.5 text-ink-soft aria-pressed:bg-ink aria-pressed:text-ground"
+            className="min-h-8 cursor-pointer px-2.5 text-ink-soft touch:min-h-12 touch:px-3 aria-pressed:bg-ink aria-pressed:text-ground"
           >
             {value}
           </button>

@@ -3,24 +3,28 @@ import type { BenchView } from '#app/benches/bench-view.server.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import { useBridgeSeconds, useLink, useMakeSafeReport } from '#app/telemetry/telemetry.tsx'
 import { AnswerLine } from '../answer-line.tsx'
-import { age } from '../figures.ts'
+import { ago } from '../figures.ts'
 import { DeadManWarning } from './dead-man-warning.tsx'
-import { lowerFirst, resetWaitsFor, shutdownSentence } from './shutdown-words.ts'
+import { lostLineSentence, lowerFirst, resetWaitsFor, shutdownSentence } from './shutdown-words.ts'
 import { useCommand } from './use-command.ts'
 
 type Props = { view: BenchView; state: BenchState | null }
 
-/** What needs a person now. What cannot wait stays in view below the header, wherever the page is scrolled to. */
+/**
+ * What needs a person now. What cannot wait stays in view below the header, wherever the page is scrolled to: where the
+ * path of the energy fills the screen, it stands above it.
+ */
 export function Banners({ view, state }: Props) {
   const top = useHeaderHeight()
   return (
     <>
       <div
         style={{ top }}
-        className="sticky z-30 grid max-h-[50dvh] grid-cols-[minmax(0,1fr)] gap-2 overflow-y-auto bg-ground empty:hidden"
+        className="sticky z-30 grid max-xl:order-first max-h-[50dvh] grid-cols-[minmax(0,1fr)] gap-2 overflow-y-auto bg-ground empty:hidden"
       >
         <LinkBanner />
-        {state?.phase === 'lost' && <LostBanner state={state} />}
+        {/* A trip by a lost line says it itself. */}
+        {state?.phase === 'lost' && state.trip?.kind !== 'lost-line' && <LostBanner state={state} />}
         {state?.trip && <TripBanner view={view} state={state} />}
         {state?.controls?.warned && <DeadManWarning controls={state.controls} personId={view.person.id} />}
         <MakeSafeAnswer />
@@ -53,7 +57,7 @@ function LinkBanner() {
   const link = useLink()
   if (link.kind === 'connected' || link.kind === 'connecting') return null
   return (
-    <Hatched aside={link.kind === 'reconnecting' && <Since seconds={link.since} />}>
+    <Hatched aside={link.kind === 'reconnecting' && <LostSince seconds={link.since} />}>
       {link.kind === 'refused' ? (
         <>
           <b>No telemetry.</b> {link.reason} Nothing on this page is live; make safe still works through the
@@ -61,10 +65,10 @@ function LinkBanner() {
         </>
       ) : (
         <>
-          <b>Voltage unknown: treat as live.</b> The link to the bridge is lost{' '}
-          {link.reason ? `(${link.reason}) ` : ''}and the figures below are old. Make safe is still tried in
-          every way that is left; the emergency stop needs no link. Trying again. If this lasts, tell the
-          technician: the bridge is down, or does not accept this page.
+          <b>Voltage unknown: treat as live.</b> The link to the bridge is lost
+          {link.reason ? ` (${link.reason})` : ''}: the figures below are old. Make safe is still tried in
+          every way that is left; the emergency stop needs no link. This page keeps trying. If it lasts, tell
+          the technician.
         </>
       )}
     </Hatched>
@@ -72,21 +76,17 @@ function LinkBanner() {
 }
 
 /** Of this browser's clock, which is the one that lost the link. */
-function Since({ seconds }: { seconds: number }) {
+function LostSince({ seconds }: { seconds: number }) {
   // The tick alone is wanted: it renders this anew every second.
   useBridgeSeconds()
-  return <>Since {age(Date.now() / 1000 - seconds)}.</>
+  return <>Lost {ago(Date.now() / 1000 - seconds)}.</>
 }
 
 function LostBanner({ state }: { state: BenchState }) {
   const now = useBridgeSeconds()
-  const lost = Object.entries(state.ports).filter(([, port]) => port !== 'open')
   return (
-    <Hatched aside={now !== null && `Since ${age(now - state.since)}.`}>
-      <b>Voltage unknown: treat as live.</b> The line to the{' '}
-      {lost.map(([instrument]) => instrument).join(', ') || 'instruments'} is lost. The supply switches its
-      outputs off by itself when it hears nothing. Check the cable and the instrument; the bridge keeps
-      trying.
+    <Hatched aside={now !== null && `Lost ${ago(now - state.since)}.`}>
+      <b>Voltage unknown: treat as live.</b> {lostLineSentence(state)}
     </Hatched>
   )
 }
@@ -129,7 +129,7 @@ function TripBanner({ view, state }: { view: BenchView; state: BenchState }) {
           type="submit"
           aria-disabled={waits !== null || command.isBusy}
           onClick={(event) => waits !== null && event.preventDefault()}
-          className="min-h-9 cursor-pointer rounded-sm border border-current px-3.5 py-1.5 font-medium aria-disabled:cursor-not-allowed aria-disabled:border-dashed"
+          className="min-h-9 cursor-pointer rounded-sm border border-current px-3.5 py-1.5 font-medium touch:min-h-12 aria-disabled:cursor-not-allowed aria-disabled:border-dashed"
         >
           {waits === null ? 'Reset' : `Reset: waits for ${waits}`}
         </button>
@@ -159,10 +159,10 @@ function AnswerOnTrip({ reply }: { reply: ReturnType<typeof useCommand>['reply']
   )
 }
 
-/** For a while after a make safe: what was commanded and what has been measured since. */
+/** After a make safe, until an output is on again: what was commanded and what has been measured since. */
 function ShutdownNote({ state }: { state: BenchState }) {
   const now = useBridgeSeconds()
-  if (!state.shutdown || now === null || now - state.shutdown.at > 120) return null
+  if (!state.shutdown || now === null) return null
   if (state.anode.on || state.coils.on) return null
   return (
     <p className="border border-rule px-4 py-2">

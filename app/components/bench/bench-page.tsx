@@ -1,5 +1,5 @@
 import type { BenchView } from '#app/benches/bench-view.server.ts'
-import { useBenchState } from '#app/telemetry/telemetry.tsx'
+import { useBenchState, useLink } from '#app/telemetry/telemetry.tsx'
 import { Banners } from './banners.tsx'
 import { nextStep } from './bring-up.ts'
 import { BringUpGuide } from './bring-up-guide.tsx'
@@ -21,8 +21,10 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
   const { config } = view.bench
   const state = useBenchState(config.benchId)
   useFreshView()
+  const isLinked = useLink().kind === 'connected'
   const step =
     state &&
+    isLinked &&
     nextStep({
       state,
       cautionsAcknowledged: view.cautionsAcknowledged,
@@ -33,35 +35,40 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
   const mine = read && edgesOf(read, view.person.id).mine
   return (
     <div className="grid grid-cols-[minmax(0,1fr)] gap-4">
-      {state ? (
-        <>
+      {state && (
+        <div className="flex flex-wrap items-center gap-x-6 gap-y-3 xl:min-h-13 xl:flex-nowrap">
+          {step && <BringUpGuide step={step} benchId={config.benchId} />}
           <Controls view={view} state={state} />
-          <EnergyPath view={view} state={state} isAtControls={isAtControls} />
-        </>
+        </div>
+      )}
+      {state ? (
+        <EnergyPath view={view} state={state} isAtControls={isAtControls} />
       ) : (
         <p className="border-x-[3px] border-ink px-4 py-6 text-ink-soft">
           Waiting for the bridge. Nothing is known of this bench yet: treat it as live.
         </p>
       )}
       <Banners view={view} state={state} />
-      {step && <BringUpGuide step={step} benchId={config.benchId} />}
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[minmax(0,420px)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,480px)_minmax(0,1fr)]">
-        <Tube
-          benchId={config.benchId}
-          config={config}
-          edges={mine ? [mine.leftMetres, mine.rightMetres] : []}
-        />
+      {/* The tube is as tall as the window leaves it; on a wide one the logbook stands beside it, in sight of the beam. */}
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[clamp(360px,min(42vw,(100dvh_-_490px)*0.94),860px)_minmax(0,1fr)] xl:grid-rows-[auto_1fr]">
+        <div className="min-w-0 xl:sticky xl:top-18 xl:row-span-2 xl:self-start">
+          <Tube
+            benchId={config.benchId}
+            config={config}
+            edges={mine ? [mine.leftMetres, mine.rightMetres] : []}
+          />
+        </div>
         <div className="min-w-0">
           <ChannelStrips config={config} state={state} />
-          <div className="grid gap-4 pt-3 md:grid-cols-[minmax(0,1fr)_auto] md:items-end">
+          <div className="grid gap-4 pt-3 md:grid-cols-[minmax(0,1fr)_auto]">
             <LiveResult view={view} state={state} />
             <CaptureButton view={view} state={state} />
           </div>
         </div>
-      </div>
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-2">
-        <RunHeader view={view} />
-        <Logbook view={view} />
+        <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-2 lg:max-xl:col-span-2">
+          <RunHeader view={view} />
+          <Logbook view={view} />
+        </div>
       </div>
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-10 gap-y-6 pt-2 lg:grid-cols-2">
         <EventLog view={view} />

@@ -26,7 +26,7 @@ export function CaptureButton({ view, state }: { view: BenchView; state: BenchSt
   }, [])
 
   return (
-    <div className="grid max-w-72 gap-1 justify-self-end text-right max-md:justify-self-start max-md:text-left">
+    <div className="grid gap-1 md:max-w-72 md:justify-items-end md:justify-self-end md:pt-5 md:text-right">
       <fetcher.Form
         ref={form}
         method="post"
@@ -35,12 +35,15 @@ export function CaptureButton({ view, state }: { view: BenchView; state: BenchSt
       >
         <button
           type="submit"
-          className="button button-main"
+          className="button button-main max-md:min-h-12 max-md:w-full"
           aria-disabled={isHeld}
           aria-keyshortcuts="Control+Enter"
           aria-describedby="capture-waits"
         >
-          Capture <span aria-hidden="true">Ctrl Enter</span>
+          Capture{' '}
+          <span aria-hidden="true" className="pl-1 font-normal max-sm:hidden">
+            Ctrl Enter
+          </span>
         </button>
       </fetcher.Form>
       <p id="capture-waits" className="text-[12.5px] text-ink-soft">

@@ -7,7 +7,7 @@ export function CautionsGlance({ benchId }: { benchId: string }) {
     <section aria-labelledby="cautions" className="min-w-0">
       <h2 id="cautions" className="mb-1 flex flex-wrap justify-between gap-3">
         <span className="font-medium">Cautions</span>
-        <Link to={href('/benches/:benchId/cautions', { benchId })} className="link text-ink-soft">
+        <Link to={href('/benches/:benchId/cautions', { benchId })} className="link-alone text-ink-soft">
           in full
         </Link>
       </h2>

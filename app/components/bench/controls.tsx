@@ -22,7 +22,7 @@ export function Controls({ view, state }: Props) {
     </command.Form>
   )
   return (
-    <section aria-label="Controls" className="flex flex-wrap items-center gap-x-4 gap-y-2">
+    <section aria-label="Controls" className="flex flex-wrap items-center gap-x-4 gap-y-2 xl:ml-auto">
       <p>
         <span className="text-ink-soft">at the controls: </span>
         {holder ? (
@@ -42,7 +42,11 @@ export function Controls({ view, state }: Props) {
           Take over
         </button>
       )}
-      <AnswerLine reply={command.reply} className="text-[12.5px] text-ink-soft" />
+      {/* What was done shows in the line itself; it is said to whoever does not see it. */}
+      <AnswerLine
+        reply={command.reply}
+        className={command.reply && !command.reply.ok ? 'basis-full text-[12.5px] xl:text-right' : 'sr-only'}
+      />
       {holder && (
         <Dialog isOpen={isTakingOver} onOpenChange={setTakingOver} title={`Take over from ${holder.name}`}>
           <p>
@@ -88,23 +92,29 @@ function HandOver({ view }: { view: BenchView }) {
         ) : (
           <command.Form method="post" action={command.action} className="grid gap-4">
             <input type="hidden" name="kind" value="hand-over" />
-            <label className="grid grid-cols-[minmax(0,1fr)] gap-1">
-              <span className="font-medium">To whom</span>
-              <select
-                name="toPersonId"
-                value={toPersonId}
-                onChange={(event) => setToPersonId(event.target.value)}
-                className="min-h-10 w-full min-w-0 px-2"
-              >
-                <option value="">Choose a person</option>
-                {others.map((person) => (
-                  <option key={person.id} value={person.id} disabled={!person.acknowledged}>
+            {/* No list that drops down: the browser marks its choice in a blue of its own. */}
+            <fieldset className="grid max-h-[40dvh] grid-cols-[minmax(0,1fr)] overflow-y-auto">
+              <legend className="mb-1 font-medium">To whom</legend>
+              {others.map((person) => (
+                <label
+                  key={person.id}
+                  className={`flex min-h-9 items-center gap-3 border-b border-rule py-1.5 touch:min-h-12 ${person.acknowledged ? 'cursor-pointer' : 'text-ink-soft'}`}
+                >
+                  <input
+                    type="radio"
+                    name="toPersonId"
+                    value={person.id}
+                    checked={toPersonId === person.id}
+                    disabled={!person.acknowledged}
+                    onChange={() => setToPersonId(person.id)}
+                  />
+                  <span>
                     {person.name}, {person.role}
-                    {person.acknowledged ? '' : ' (cautions not acknowledged)'}
-                  </option>
-                ))}
-              </select>
-            </label>
+                    {person.acknowledged ? '' : ': cautions not acknowledged'}
+                  </span>
+                </label>
+              ))}
+            </fieldset>
             <AnswerLine reply={command.reply?.ok ? undefined : command.reply} />
             <div className="flex flex-wrap gap-3">
               <button

@@ -22,15 +22,21 @@ export function DeadManWarning({ controls, personId }: Props) {
   const left = now === null ? null : Math.max(0, Math.ceil(controls.presentUntil - now))
   const when = left === null ? 'soon' : `in ${left} s`
   return (
-    <section aria-label="Dead-man" className="hatch border-2 border-caution px-4 py-3">
-      <div className="flex flex-wrap items-center gap-4">
-        <p role="alert" className="bg-ground px-1 text-caution">
-          <b>{isMe ? 'Are you at the bench?' : `${controls.name} has not been seen at the controls.`}</b>{' '}
-          {isMe && 'Nothing has been touched on this page for a while.'}
-        </p>
-        <p className="bg-ground px-1 text-caution">The bridge makes this bench safe {when}.</p>
+    <section aria-label="Dead-man" className="hatch border-2 border-caution p-2.5">
+      <div className="flex flex-wrap items-center justify-between gap-x-6 gap-y-2 bg-ground px-2.5 py-2 text-caution">
+        <div className="min-w-0 flex-1 basis-60">
+          <p role="alert">
+            <b>{isMe ? 'Are you at the bench?' : `${controls.name} has not been seen at the controls.`}</b>{' '}
+            {isMe && 'Nothing has been touched on this page for a while.'}
+          </p>
+          <p>The bridge makes this bench safe {when}.</p>
+        </div>
         {isMe && (
-          <button type="button" onClick={showPresence} className="button button-main">
+          <button
+            type="button"
+            onClick={showPresence}
+            className="button button-main min-h-12 px-6 max-sm:w-full"
+          >
             I am here
           </button>
         )}

@@ -8,11 +8,7 @@ export function HeaterSwitch({ benchId, isOn }: { benchId: string; isOn: boolean
     <command.Form method="post" action={command.action} className="mt-1">
       <input type="hidden" name="kind" value="switch-heater" />
       <input type="hidden" name="on" value={isOn ? 'false' : 'true'} />
-      <button
-        type="submit"
-        disabled={command.isBusy}
-        className="min-h-7 cursor-pointer rounded-sm border border-ink px-2 text-[12.5px] font-medium text-ink"
-      >
+      <button type="submit" disabled={command.isBusy} className="button button-small">
         {isOn ? 'Heater off' : 'Heater on'}
       </button>
       <AnswerLine reply={command.reply?.ok ? undefined : command.reply} className="text-[12.5px]" />

@@ -14,6 +14,10 @@ type Props = {
   isCurrent: boolean
 }
 
+/** Where the row is a block, each value has its heading above it. */
+const named =
+  'stacked:p-0 stacked:text-left stacked:empty:hidden stacked:before:inline-block stacked:before:w-full stacked:before:text-[12.5px] stacked:before:text-ink-soft stacked:before:content-[attr(data-name)]'
+
 const centimetres = (metres: number) => fixed(metres * 100, 2)
 
 /** One reading: what was captured, the edges that this person read, what follows, and what others read. */
@@ -53,13 +57,13 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
         onChange={(event) => set(event.target.value)}
         aria-invalid={errors[name] ? true : undefined}
         aria-describedby={errors[name] ? `${id}-${name}` : undefined}
-        className="min-h-8 w-20 border-ink px-2 text-right font-medium"
+        className="min-h-8 w-20 border-ink px-2 text-right font-medium stacked:w-full stacked:max-w-40 touch:min-h-12"
       />
       {errors[name] && (
         <span
           id={`${id}-${name}`}
           role="alert"
-          className="block max-w-44 text-[12.5px] whitespace-normal text-trip"
+          className="block max-w-44 text-[12.5px] whitespace-normal text-trip stacked:max-w-full"
         >
           {errors[name].join(' ')}
         </span>
@@ -67,46 +71,55 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
     </>
   )
   const diameter = reading.result?.diameterMetres ?? (mine ? mine.rightMetres - mine.leftMetres : null)
-  const cell = `px-3 py-1.5 ${reading.struck ? 'line-through' : ''}`
+  const cell = `px-2.5 py-1.5 ${named} ${reading.struck ? 'line-through' : ''}`
   return (
     <tr
-      className={`border-b border-rule text-right whitespace-nowrap ${reading.struck ? 'text-ink-soft' : ''}`}
+      className={`border-b border-rule text-right whitespace-nowrap stacked:grid stacked:grid-cols-2 stacked:gap-x-3 stacked:gap-y-1.5 stacked:py-2 stacked:whitespace-normal ${reading.struck ? 'text-ink-soft' : ''}`}
       data-reading={reading.number}
     >
-      <th scope="row" className={`py-1.5 pr-3 text-left font-normal ${reading.struck ? 'line-through' : ''}`}>
+      <th
+        scope="row"
+        className={`py-1.5 pr-3 text-left font-normal stacked:col-span-2 stacked:p-0 stacked:font-medium stacked:before:content-['Reading_'] ${reading.struck ? 'line-through' : ''}`}
+      >
         {label}
         {reading.polarity === -1 && <span className="text-ink-soft"> −B</span>}
       </th>
-      <td className={cell}>{withUncertainty(reading.anodeVolts, reading.uAnodeVolts)}</td>
-      <td className={cell}>{withUncertainty(reading.coilAmps, reading.uCoilAmps)}</td>
-      <td className={cell}>
+      <td className={cell} data-name="anode V">
+        {withUncertainty(reading.anodeVolts, reading.uAnodeVolts)}
+      </td>
+      <td className={cell} data-name="coils A">
+        {withUncertainty(reading.coilAmps, reading.uCoilAmps)}
+      </td>
+      <td className={cell} data-name="left cm">
         {isEntry ? field('left', left, setLeft) : mine && centimetres(mine.leftMetres)}
       </td>
-      <td className={cell}>
+      <td className={cell} data-name="right cm">
         {isEntry ? field('right', right, setRight) : mine && centimetres(mine.rightMetres)}
       </td>
-      <td className={cell}>{diameter !== null && centimetres(diameter)}</td>
-      <td className={`${cell} ${reading.struck ? '' : beam}`}>
+      <td className={cell} data-name="d cm">
+        {diameter !== null && centimetres(diameter)}
+      </td>
+      <td className={`${cell} ${reading.struck ? '' : beam}`} data-name="e/m 10¹¹ C/kg">
         {reading.result &&
           withUncertainty(reading.result.chargeToMass / 1e11, reading.result.standardUncertainty / 1e11)}
       </td>
-      <td className="px-3 py-1.5 text-left">
+      <td className="px-3 py-1.5 text-left whitespace-normal stacked:col-span-2 stacked:p-0">
         <div className="flex flex-wrap items-center gap-x-3 gap-y-1 text-ink-soft">
           {isEntry && (
             <fetcher.Form
               id={id}
               method="post"
               action={href('/benches/:benchId/readings/:readingId/edges', { benchId, readingId: reading.id })}
-              className="flex items-center gap-3"
+              className="flex flex-wrap items-center gap-x-3 gap-y-1"
             >
               <button
                 type="submit"
                 disabled={fetcher.state !== 'idle'}
-                className="min-h-8 cursor-pointer rounded-sm border border-ink px-2.5 text-[13px] font-medium text-ink"
+                className="button button-small whitespace-nowrap"
               >
                 Enter edges
               </button>
-              <span>{view.bench.config.tube.edges} edges, as read off the scale</span>
+              <span className="whitespace-nowrap">{view.bench.config.tube.edges} edges</span>
             </fetcher.Form>
           )}
           {reading.struck && (
@@ -116,7 +129,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
           )}
           {others.length > 0 && <Others others={others} spreadMetres={spreadMetres} />}
           {!reading.struck && !isEntry && (
-            <button type="button" onClick={readAgain} className="link cursor-pointer">
+            <button type="button" onClick={readAgain} className="link-alone">
               {mine ? 'read again' : 'read the edges'}
               <span className="sr-only"> of reading {label}</span>
             </button>

@@ -14,16 +14,16 @@ export function Logbook({ view }: { view: BenchView }) {
       </p>
     )
   return (
-    <section aria-label="Readings" className="relative overflow-x-auto">
-      <table className="w-full border-collapse">
+    <section aria-label="Readings" className="@container relative">
+      <table className="w-full border-collapse stacked:block">
         <caption className="sr-only">Readings of this run</caption>
-        <thead>
+        <thead className="stacked:sr-only">
           <tr className="border-b border-ink text-right whitespace-nowrap text-ink-soft">
             <th scope="col" className="py-1.5 pr-3 text-left font-normal">
               Reading
             </th>
             {headings.map((heading) => (
-              <th key={heading} scope="col" className="px-3 py-1.5 font-normal">
+              <th key={heading} scope="col" className="px-2.5 py-1.5 font-normal">
                 {heading}
               </th>
             ))}
@@ -32,7 +32,7 @@ export function Logbook({ view }: { view: BenchView }) {
             </th>
           </tr>
         </thead>
-        <tbody>
+        <tbody className="stacked:block stacked:border-t stacked:border-ink">
           {oldestFirst(view.readings).map((reading) => (
             <LogbookRow
               key={reading.id}

@@ -23,7 +23,7 @@ export function PolaritySwitch({ benchId, polarity, isChanging, isAtControls }: 
             value={value}
             aria-pressed={polarity === value}
             disabled={command.isBusy || isChanging}
-            className="min-h-7 cursor-pointer rounded-sm border border-edge px-2 text-ink aria-pressed:border-ink aria-pressed:bg-ink aria-pressed:text-ground"
+            className="min-h-7 cursor-pointer rounded-sm border border-edge px-2 text-ink touch:min-h-12 touch:min-w-14 aria-pressed:border-ink aria-pressed:bg-ink aria-pressed:text-ground"
           >
             {words[value]}
           </button>

@@ -22,13 +22,13 @@ export function RunHeader({ view }: { view: BenchView }) {
           'No run yet'
         )}
       </h2>
-      <div className="flex flex-wrap items-center gap-3">
-        <AnswerLine reply={fetcher.data} className="text-[12.5px] text-ink-soft" />
+      <div className="flex flex-wrap items-center justify-end gap-x-3">
         <fetcher.Form method="post" action={href('/benches/:benchId/runs', { benchId: view.bench.id })}>
           <button type="submit" className="button" disabled={fetcher.state !== 'idle'}>
             Start a new run
           </button>
         </fetcher.Form>
+        <AnswerLine reply={fetcher.data} className="text-[12.5px] text-ink-soft" />
       </div>
     </header>
   )

@@ -40,7 +40,7 @@ export function SetpointControl(props: Props) {
       type="button"
       onClick={(event) => move(direction, event.shiftKey)}
       aria-label={`${label} ${direction === 1 ? 'up' : 'down'}`}
-      className="min-h-7 min-w-7 cursor-pointer rounded-sm border border-edge text-ink"
+      className="min-h-7 min-w-7 cursor-pointer rounded-sm border border-edge text-ink touch:min-h-12 touch:min-w-12"
     >
       {direction === 1 ? '+' : '−'}
     </button>
@@ -69,16 +69,12 @@ export function SetpointControl(props: Props) {
           }}
           aria-invalid={errors.length > 0 || undefined}
           aria-describedby={`${id}-progress ${id}-error`}
-          className="min-h-7 w-18 px-2 text-right"
+          className="min-h-7 w-18 px-2 text-right touch:min-h-12"
         />
         {stepper(1)}
         <span>{unit}</span>
         {draft !== null && (
-          <button
-            type="submit"
-            disabled={command.isBusy}
-            className="min-h-7 cursor-pointer rounded-sm border border-ink px-2 font-medium text-ink"
-          >
+          <button type="submit" disabled={command.isBusy} className="button button-small">
             Set
           </button>
         )}

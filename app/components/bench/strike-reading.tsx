@@ -20,7 +20,7 @@ export function StrikeReading({ benchId, readingId, number }: Props) {
   const errors = fetcher.data && !fetcher.data.ok ? fetcher.data.errors.reason : undefined
   return (
     <>
-      <button type="button" onClick={() => setOpen(true)} className="link cursor-pointer">
+      <button type="button" onClick={() => setOpen(true)} className="link-alone">
         strike<span className="sr-only"> reading {number}</span>
       </button>
       <Dialog isOpen={isOpen} onOpenChange={setOpen} title={`Strike reading ${number}`}>

@@ -147,7 +147,7 @@ function Enlargement(props: EnlargementProps) {
           onFocus={() => setSighting(true)}
           onBlur={() => setSighting(false)}
           aria-valuetext={`${((x - scale.zero) / 10).toFixed(1)} centimetres on the scale`}
-          className="min-w-0 flex-1"
+          className="min-w-0 flex-1 touch:h-12"
         />
       </div>
     </div>

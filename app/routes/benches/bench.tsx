@@ -49,12 +49,12 @@ function Framed({ view }: { view: Route.ComponentProps['loaderData'] }) {
   return (
     <PageFrame
       where={
-        <h1 className="flex flex-wrap items-baseline gap-x-2">
-          <Link to={href('/hall')} className="text-ink-soft">
-            Hall /
+        <h1 className="leading-tight">
+          <Link to={href('/hall')} className="text-ink-soft max-sm:hidden">
+            Hall /{' '}
           </Link>
-          <b className="font-medium">{view.bench.name}</b>
-          <span className="text-ink-soft">{view.bench.place}</span>
+          <b className="font-medium">{view.bench.name}</b>{' '}
+          <span className="text-ink-soft max-sm:block max-sm:text-[12.5px]">{view.bench.place}</span>
         </h1>
       }
       standing={isAtControls ? 'at the controls' : undefined}
