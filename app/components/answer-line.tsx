@@ -14,9 +14,11 @@ const answerMilliseconds = 10_000
 export function AnswerLine({ reply, fields = [], className }: Props) {
   const isFresh = useFreshness(reply)
   const problems = reply && !reply.ok ? problemsOf(reply, fields) : []
+  const answer = reply?.ok && isFresh ? reply.answer : ''
+  // Empty it takes no room, and still stands there for whoever is told of changes.
   return (
-    <div className={className}>
-      <p role="status">{reply?.ok && isFresh ? reply.answer : ''}</p>
+    <div className={answer || problems.length > 0 ? className : 'sr-only'}>
+      <p role="status">{answer}</p>
       <div role="alert">
         {problems.map((sentence) => (
           <p key={sentence} className="font-medium text-trip">

@@ -31,7 +31,7 @@ function Framed({ bench, person, children }: Props) {
   return (
     <PageFrame
       where={
-        <Link to={href('/benches/:benchId', { benchId: bench.id })}>
+        <Link to={href('/benches/:benchId', { benchId: bench.id })} className="block touch:py-3">
           <b className="font-medium">{bench.name}</b> <span className="text-ink-soft">{bench.place}</span>
         </Link>
       }

@@ -18,9 +18,10 @@ export function PageFrame({ where, standing, makeSafe, children }: Props) {
   const person = useRouteLoaderData<typeof loader>('root')?.person
   return (
     <>
-      <header className="sticky top-0 z-50 flex flex-wrap items-center gap-x-5 gap-y-1 border-b border-rule bg-ground px-3 py-1.5 sm:px-6 sm:py-2.5">
-        {/* First for the keyboard, last for the eye; on a phone in the first of two rows. */}
-        {makeSafe && <div className="order-3 sm:order-6">{makeSafe}</div>}
+      <header className="sticky top-0 z-50 flex flex-wrap items-center lg:flex-nowrap gap-x-5 gap-y-1 border-b border-rule bg-ground px-3 py-1.5 sm:px-6 sm:py-2.5">
+        {/* First for the keyboard, last for the eye; where the header has two rows, in the first. */}
+        {makeSafe && <div className="order-3 shrink-0 lg:order-6">{makeSafe}</div>}
+        <span aria-hidden="true" className="order-3 w-full lg:hidden" />
         <Link
           to={href('/hall')}
           className="order-1 flex items-center gap-2 text-[17px] font-bold tracking-tight touch:min-h-12"
@@ -28,11 +29,11 @@ export function PageFrame({ where, standing, makeSafe, children }: Props) {
           <Mark />
           <span className="max-sm:sr-only">Coilside</span>
         </Link>
-        <div className="order-2 min-w-0 max-sm:flex-1 sm:mr-auto">{where}</div>
+        <div className="order-2 min-w-0 flex-1 lg:mr-auto lg:shrink-0">{where}</div>
         {person && (
           <Link
             to={href('/account')}
-            className="order-4 max-sm:mr-auto max-sm:text-[12.5px] sm:order-5 touch:py-3"
+            className="order-4 min-w-0 truncate max-lg:mr-auto max-sm:text-[12.5px] lg:order-5 touch:py-3.5"
           >
             <b className="font-medium">{person.name}</b>{' '}
             <span className="text-ink-soft">
@@ -41,7 +42,7 @@ export function PageFrame({ where, standing, makeSafe, children }: Props) {
             </span>
           </Link>
         )}
-        <div className="order-5 sm:order-4">
+        <div className="order-5 shrink-0 lg:order-4">
           <RoomLightSwitch />
         </div>
       </header>

@@ -22,7 +22,7 @@ export function RoomLightSwitch() {
           fetcher.submit({ roomLight: submitter.value }, { method: 'post', action: href('/room-light') })
       }}
     >
-      <span className="text-ink-soft max-sm:sr-only" id="room-light">
+      <span className="text-ink-soft max-xl:sr-only" id="room-light">
         room light
       </span>
       <span role="status" className="text-trip empty:hidden">

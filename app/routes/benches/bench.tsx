@@ -49,12 +49,12 @@ function Framed({ view }: { view: Route.ComponentProps['loaderData'] }) {
   return (
     <PageFrame
       where={
-        <h1 className="leading-tight">
+        <h1 className="items-baseline gap-x-2 leading-tight sm:flex">
           <Link to={href('/hall')} className="text-ink-soft max-sm:hidden">
-            Hall /{' '}
+            Hall /
           </Link>
-          <b className="font-medium">{view.bench.name}</b>{' '}
-          <span className="text-ink-soft max-sm:block max-sm:text-[12.5px]">{view.bench.place}</span>
+          <b className="font-medium whitespace-nowrap">{view.bench.name}</b>
+          <span className="text-ink-soft truncate max-sm:block max-sm:text-[12.5px]">{view.bench.place}</span>
         </h1>
       }
       standing={isAtControls ? 'at the controls' : undefined}
