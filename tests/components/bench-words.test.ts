@@ -119,7 +119,7 @@ describe('a setpoint', () => {
 
   it('is off, ramping, commanded or reached', () => {
     expect(words({ ...anode, asked: 0, commanded: 0, on: false }, 0)).toBe('off')
-    expect(words({ ...anode, commanded: 120 }, 119)).toBe(`ramping to 200.0${thin}V, now 120.0${thin}V`)
+    expect(words({ ...anode, commanded: 120 }, 119)).toBe(`ramping, 120.0 of 200.0${thin}V`)
     expect(words(anode, 203)).toBe(`200.0${thin}V reached`)
     expect(words(anode, 150)).toBe(`200.0${thin}V commanded, not reached`)
     expect(words(anode, null)).toBe(`200.0${thin}V commanded, not measured`)

@@ -11,6 +11,7 @@ function step(changes: Partial<BenchState> = {}, rest: Partial<Parameters<typeof
     cautionsAcknowledged: true,
     personId: 'p1',
     readings: [],
+    edges: 'outer',
     ...rest,
   })
 }
@@ -51,6 +52,12 @@ describe('the next step of the bring-up', () => {
     expect(step({}, { readings: [readingView()] })?.name).toBe('Read the edges')
     expect(step({}, { readings: [readingView({ edges: [edgesBy('p2')] })] })?.name).toBe('Read the edges')
     expect(step({}, { readings: [readingView({ edges: [edgesBy('p1')] })] })?.name).toBe('Capture')
+  })
+
+  it('says which edges are read at this bench', () => {
+    const why = (edges: 'outer' | 'middle') => step({}, { readings: [readingView()], edges })?.why
+    expect(why('outer')).toContain('Read both outer edges off the scale')
+    expect(why('middle')).toContain('Read the middle of the beam on both sides off the scale')
   })
 
   it('does not ask for edges that can no longer be seen, nor for those of a struck reading', () => {

@@ -1,4 +1,5 @@
 import type { ReadingView } from '#app/benches/bench-view.server.ts'
+import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import { readingToRead } from './logbook-rows.ts'
 
@@ -21,10 +22,24 @@ type Input = {
   cautionsAcknowledged: boolean
   personId: string
   readings: ReadingView[]
+  /** Which edges of the beam are read. */
+  edges: BenchConfig['tube']['edges']
+}
+
+const edgeWords = {
+  outer: 'both outer edges',
+  inner: 'both inner edges',
+  middle: 'the middle of the beam on both sides',
 }
 
 /** The one thing to do next, in the order in which a tube is brought up, and why. Null while the bench is tripped or lost. */
-export function nextStep({ state, cautionsAcknowledged, personId, readings }: Input): BringUpStep | null {
+export function nextStep({
+  state,
+  cautionsAcknowledged,
+  personId,
+  readings,
+  edges,
+}: Input): BringUpStep | null {
   if (state.phase === 'unconfigured' || state.phase === 'lost' || state.phase === 'tripped') return null
   const step = (index: number, why: string): BringUpStep => ({
     index,
@@ -48,10 +63,10 @@ export function nextStep({ state, cautionsAcknowledged, personId, readings }: In
   if (!state.coils.on || state.coils.asked === 0)
     return step(5, 'Raise it until the beam closes to a circle inside the glass.')
   const current = readingToRead(readings)
-  if (current && isSameSetting(current, state) && !current.edges.some((edges) => edges.personId === personId))
+  if (current && isSameSetting(current, state) && !current.edges.some((read) => read.personId === personId))
     return step(
       8,
-      `Reading ${current.number} has no edges of yours. Read both off the scale while the beam stands.`,
+      `Reading ${current.number} has no edges of yours. Read ${edgeWords[edges]} off the scale while the beam stands.`,
     )
   const unsettled = (['anodeVolts', 'coilAmps'] as const).find(
     (channel) => state.channels[channel]?.state !== 'settled',

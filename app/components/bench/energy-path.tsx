@@ -75,7 +75,7 @@ function HeaterStage({ view, state, isAtControls }: Props) {
 
 /** With a line lost the anode can be measured and still not be commanded: it stays to be treated as live. */
 function anodeHazard(volts: number | null, phase: BenchState['phase']): string | null {
-  if (volts === null) return 'unknown: treat as live'
+  if (volts === null) return 'treat as live'
   if (Math.abs(volts) > hazardousVolts) return 'hazardous'
   return phase === 'lost' ? 'treat as live' : null
 }

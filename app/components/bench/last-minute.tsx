@@ -14,7 +14,7 @@ export function LastMinute({ benchId, rows }: { benchId: string; rows: Row[] }) 
   const [isOpen, setOpen] = useState(false)
   return (
     <details onToggle={(event) => setOpen(event.currentTarget.open)} className="py-1 text-[12.5px]">
-      <summary className="w-fit cursor-pointer text-ink-soft touch:py-3">last minute in numbers</summary>
+      <summary className="w-fit cursor-pointer text-ink-soft touch:py-3.5">last minute in numbers</summary>
       {isOpen && <Numbers benchId={benchId} rows={rows} />}
     </details>
   )

@@ -36,11 +36,11 @@ export function LiveResult({ view, state }: { view: BenchView; state: BenchState
   if (live.kind === 'none') return <NoResult sentence={live.sentence} />
   const { value, standardUncertainty, expandedUncertainty, coverageFactor, groups } = live.result
   return (
-    <section aria-label="e/m" className="min-w-0">
+    <section aria-label="e/m" className="@container min-w-0">
       <p className="text-ink-soft">e/m, with the edges of reading {live.number}</p>
       {/* On a real bench in a dark room the tube alone may glow. */}
       <p
-        className={`text-[clamp(22px,6.5vw,40px)] leading-tight font-bold tracking-tighter text-beam ${isVirtual ? '' : 'dark:text-ink'}`}
+        className={`text-[clamp(20px,7cqi,40px)] leading-tight whitespace-nowrap font-bold tracking-tighter text-beam ${isVirtual ? '' : 'dark:text-ink'}`}
       >
         {formatConcise(value, standardUncertainty, { exponent })} × 10¹¹ C/kg
       </p>

@@ -51,13 +51,14 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
         form={id}
         name={name}
         aria-label={`Reading ${label}, ${name} edge in cm`}
+        placeholder={view.bench.config.tube.edges}
         inputMode="decimal"
         autoComplete="off"
         value={value}
         onChange={(event) => set(event.target.value)}
         aria-invalid={errors[name] ? true : undefined}
         aria-describedby={errors[name] ? `${id}-${name}` : undefined}
-        className="min-h-8 w-20 border-ink px-2 text-right font-medium stacked:w-full stacked:max-w-40 touch:min-h-12"
+        className="min-h-8 w-20 border-ink px-2 text-right font-medium placeholder:font-normal placeholder:text-ink-soft stacked:w-full stacked:max-w-40 touch:min-h-12"
       />
       {errors[name] && (
         <span
@@ -110,7 +111,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
               id={id}
               method="post"
               action={href('/benches/:benchId/readings/:readingId/edges', { benchId, readingId: reading.id })}
-              className="flex flex-wrap items-center gap-x-3 gap-y-1"
+              className="flex"
             >
               <button
                 type="submit"
@@ -119,7 +120,6 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
               >
                 Enter edges
               </button>
-              <span className="whitespace-nowrap">{view.bench.config.tube.edges} edges</span>
             </fetcher.Form>
           )}
           {reading.struck && (

@@ -16,7 +16,7 @@ export function setpointProgress({ setpoint, measured, tolerance, unit, decimals
   if (!setpoint.on && setpoint.asked === 0) return 'off'
   if (!setpoint.on) return `${show(setpoint.asked)} asked, output off`
   if (Math.abs(setpoint.commanded - setpoint.asked) > 1e-9)
-    return `ramping to ${show(setpoint.asked)}, now ${show(setpoint.commanded)}`
+    return `ramping, ${fixed(setpoint.commanded, decimals)} of ${show(setpoint.asked)}`
   if (measured === null) return `${show(setpoint.asked)} commanded, not measured`
   return Math.abs(measured - setpoint.asked) <= tolerance
     ? `${show(setpoint.asked)} reached`

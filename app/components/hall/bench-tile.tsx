@@ -30,7 +30,7 @@ export function BenchTile({ bench, maySafe }: { bench: TileBench; maySafe: boole
       <h2 className="col-span-2 flex items-baseline justify-between gap-2">
         <Link
           to={href('/benches/:benchId', { benchId: bench.id })}
-          className="link truncate font-medium touch:py-2.5"
+          className="link truncate font-medium touch:py-3"
         >
           {bench.name} <span className="font-normal text-ink-soft">{bench.place}</span>
         </Link>
@@ -53,8 +53,14 @@ export function BenchTile({ bench, maySafe }: { bench: TileBench; maySafe: boole
           <Figure name="coils" benchId={bench.id} channel="coilAmps" digits={3} unit="A" />
         </dl>
         <p className="truncate text-right text-[12.5px] text-ink-soft">
-          <span className="sr-only">at the controls: </span>
-          {state?.controls ? state.controls.name : 'nobody at the controls'}
+          {state?.controls ? (
+            <>
+              <span className="sr-only">at the controls: </span>
+              {state.controls.name}
+            </>
+          ) : (
+            'controls free'
+          )}
         </p>
       </div>
       <p className="col-span-2 line-clamp-2 min-h-[2.6em] text-[12.5px] leading-[1.3] text-ink-soft">
