@@ -40,6 +40,14 @@ export async function set(
   }
 }
 
+/** Leaves the bench as the next person wants to find it: everything off, nobody at the controls, no trip by a page that went. */
+export async function leave(page: Page): Promise<void> {
+  await page.getByRole('button', { name: /^Make safe/ }).click()
+  await expect(page.getByRole('button', { name: 'Heater on' })).toBeVisible()
+  await page.getByRole('button', { name: 'Release the controls' }).click()
+  await expect(page.getByText('at the controls: nobody')).toBeVisible()
+}
+
 /** The voltage at the tube's anode as the simulator knows it. */
 export async function terminalVolts(site: Site, benchId: string): Promise<number> {
   const { anodeVolts } = await askSimulator<{ anodeVolts: number }>(site.simulatorTest, 'terminal', benchId)

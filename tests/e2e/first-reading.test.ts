@@ -1,5 +1,6 @@
 import { readEdges } from '#tests/support/read-edges.ts'
 import { askSimulator } from '#tests/support/simulator-asks.ts'
+import { leave } from './bench-steps.ts'
 import { expect, expectAccessible, test } from './fixtures.ts'
 
 /** A value written 1.749(19), in 10¹¹ C/kg. */
@@ -82,4 +83,5 @@ test('A newcomer brings the tube up, captures a reading, reads the edges off the
     'deviation from the constant in the simulator',
   ).toBeLessThan(expanded)
   await expectAccessible(page)
+  await test.step('leaves the bench off, and the controls free', () => leave(page))
 })
