@@ -51,7 +51,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
       )}
       <Banners view={view} state={state} />
       {/* The tube is as tall as the window leaves it; on a wide one the logbook's table stands beside it. */}
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[clamp(360px,min(42vw,(100dvh_-_490px)*0.94),860px)_minmax(0,1fr)] xl:grid-cols-[clamp(360px,min(100vw_-_860px,42vw,(100dvh_-_490px)*0.94),860px)_minmax(0,1fr)] xl:grid-rows-[auto_1fr]">
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[clamp(360px,min(42vw,(100dvh_-_490px)*0.94),860px)_minmax(0,1fr)] xl:grid-cols-[clamp(360px,min(100vw_-_875px,42vw,(100dvh_-_490px)*0.94),860px)_minmax(0,1fr)] xl:grid-rows-[auto_1fr]">
         <div className="w-full min-w-0 max-lg:mx-auto max-lg:max-w-[520px] xl:sticky xl:top-18 xl:row-span-2 xl:self-start">
           <Tube
             benchId={config.benchId}

@@ -72,7 +72,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
     </>
   )
   const diameter = reading.result?.diameterMetres ?? (mine ? mine.rightMetres - mine.leftMetres : null)
-  const cell = `px-2.5 py-1.5 ${named} ${reading.struck ? 'line-through' : ''}`
+  const cell = `px-2 py-1.5 ${named} ${reading.struck ? 'line-through' : ''}`
   return (
     <tr
       className={`border-b border-rule text-right whitespace-nowrap stacked:grid stacked:grid-cols-2 stacked:gap-x-3 stacked:gap-y-1.5 stacked:py-2 stacked:whitespace-normal ${reading.struck ? 'text-ink-soft' : ''}`}

@@ -23,7 +23,7 @@ export function Logbook({ view }: { view: BenchView }) {
               Reading
             </th>
             {headings.map((heading) => (
-              <th key={heading} scope="col" className="px-2.5 py-1.5 font-normal">
+              <th key={heading} scope="col" className="px-2 py-1.5 font-normal">
                 {heading}
               </th>
             ))}
