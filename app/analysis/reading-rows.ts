@@ -4,6 +4,7 @@ import {
   standardUncertaintyFromResolution,
 } from '#app/metrology/instrument-accuracy.ts'
 import type { CoilPair } from '#app/physics/coil-field.ts'
+import type { EdgeSpread } from './edge-spread.ts'
 import type { EvennessTable, Gun } from './evenness-table.ts'
 
 /** What of a commissioned bench a reading needs. x runs along the scale; both lie in the mid-plane. */
@@ -49,9 +50,11 @@ export type Reading = {
   currentAmps: number
   uCurrentAmps: number
   currentDegreesOfFreedom?: number
-  /** one entry a person or repeat */
+  /** one entry a person or repeat, the same of both in the same place */
   leftEdges: readonly number[]
   rightEdges: readonly number[]
+  /** pooled over the run; left out, it is that of these edges alone */
+  edgeSpread?: EdgeSpread | null
 }
 
 export const budgetGroups = ['anode voltage', 'coil current', 'edges', 'coil pair', 'beam'] as const
@@ -66,9 +69,6 @@ export type Row = {
   degreesOfFreedom: number
   common: boolean
 }
-
-/** Mean and spread of what several people read for one edge. */
-export type Edge = { count: number; mean: number; standardError: number }
 
 function typeA(
   group: BudgetGroup,
@@ -115,21 +115,30 @@ export function currentRows(bench: ReadingBench, reading: Reading, sensitivity: 
   ]
 }
 
-/** `perEdge` is ∂(e/m)/∂ of the right edge as read, the left edge's with the sign turned. */
-export function edgeRows(scale: ReadingBench['scale'], left: Edge, right: Edge, perEdge: number): Row[] {
+/**
+ * `perEdge` is ∂(e/m)/∂ of the right edge as read, the left edge's with the sign turned, and so ∂(e/m)/∂ of the distance.
+ *
+ * @param distance between the edges as read, the mean of `count` people
+ */
+export function edgeRows(
+  scale: ReadingBench['scale'],
+  { distance, count, spread }: { distance: number; count: number; spread: EdgeSpread | null },
+  perEdge: number,
+): Row[] {
   const group = 'edges'
   const resolution = standardUncertaintyFromResolution(scale.graduationMetres * scale.readableFraction)
   const rows = [
     typeA(group, 'leftEdgeResolution', -perEdge, resolution),
     typeA(group, 'rightEdgeResolution', perEdge, resolution),
   ]
-  if (left.count > 1) rows.push(typeA(group, 'leftEdgeSpread', -perEdge, left.standardError, left.count - 1))
-  if (right.count > 1)
-    rows.push(typeA(group, 'rightEdgeSpread', perEdge, right.standardError, right.count - 1))
+  if (spread) {
+    const standardError = spread.standardDeviationMetres / Math.sqrt(count)
+    rows.push(typeA(group, 'edgeSpread', perEdge, standardError, spread.degreesOfFreedom))
+  }
   if (scale.kind === 'ruler-behind') {
     // d = (right − left)(L − δ)/L, and perEdge already holds the factor (L − δ)/L.
     const rest = scale.eyeDistanceMetres - scale.distanceBehindMetres
-    const perDistance = (-perEdge * (right.mean - left.mean)) / rest
+    const perDistance = (-perEdge * distance) / rest
     rows.push(common(group, 'scaleDistance', perDistance, scale.uDistanceBehindMetres))
   }
   return rows

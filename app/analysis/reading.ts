@@ -8,12 +8,13 @@ import {
   requireNotNegative,
   requirePositive,
 } from '#app/statistics/domain.ts'
-import { moments } from '#app/statistics/moments.ts'
+import { pooledEdgeSpread } from './edge-spread.ts'
 import type { EvennessTable } from './evenness-table.ts'
 import { tabulateEvenness } from './evenness-table.ts'
-import type { BudgetGroup, Edge, Reading, ReadingBench, Row } from './reading-rows.ts'
+import type { BudgetGroup, Reading, ReadingBench, Row } from './reading-rows.ts'
 import { beamRow, budgetGroups, currentRows, edgeRows, pairRows, voltageRows } from './reading-rows.ts'
 
+export { type EdgeSpread, pooledEdgeSpread } from './edge-spread.ts'
 export { type EvennessTable, tabulateEvenness } from './evenness-table.ts'
 export { type BudgetGroup, budgetGroups, type Reading, type ReadingBench } from './reading-rows.ts'
 
@@ -44,8 +45,9 @@ const tables = new WeakMap<ReadingBench, Map<1 | -1, EvennessTable>>()
  * are the partial derivatives, worked out by hand; evenness takes part in those to the edges, the radius
  * and the separation of the coils.
  *
- * The resolution of each edge and of each meter stands in the budget always, the spread over several
- * people's edges beside it with n − 1 degrees of freedom. Accuracy of the meters, geometry, parallax and
+ * The resolution of each edge and of each meter stands in the budget always, and beside it the spread over
+ * people: pooled over the run where `edgeSpread` says so, else of these edges with n − 1 degrees of freedom.
+ * Where nobody else has read an edge, nothing is known of the spread and the budget is without it. Accuracy of the meters, geometry, parallax and
  * beam are common to all readings of the bench.
  *
  * @param reading.bench is taken not to change: what is tabulated for it is kept with the object
@@ -58,10 +60,9 @@ export function readingBudget(
   const { bench, voltageVolts, currentAmps } = reading
   requireReading(reading)
   requireBench(bench)
-  const left = edge('leftEdges', reading.leftEdges)
-  const right = edge('rightEdges', reading.rightEdges)
+  const edges = edgesOf(reading)
   const parallax = parallaxFactor(bench.scale)
-  const diameterMetres = (right.mean - left.mean) * parallax
+  const diameterMetres = edges.distance * parallax
   if (!(diameterMetres > 0)) throw new RangeError('rightEdges must lie to the right of leftEdges')
   const radius = diameterMetres / 2
   const table = reading.evenness ?? tableOf(bench, currentAmps > 0 ? 1 : -1)
@@ -89,7 +90,7 @@ export function readingBudget(
   const rows = [
     ...voltageRows(bench, reading, perVolt),
     ...currentRows(bench, reading, perAmp),
-    ...edgeRows(bench.scale, left, right, (perRadius * parallax) / 2),
+    ...edgeRows(bench.scale, edges, (perRadius * parallax) / 2),
     ...pairRows(bench, table, radius, perField * amps),
     beamRow(bench, perRadius),
   ]
@@ -164,14 +165,24 @@ function requireCurrent(name: string, amps: number): void {
   if (amps === 0) throw new RangeError(`${name} must not be 0: without a field there is no orbit`)
 }
 
-function edge(name: string, readings: readonly number[]): Edge {
-  if (readings.length === 0) throw new RangeError(`${name} must not be empty`)
-  readings.forEach((reading, i) => {
-    requireFinite(`${name}[${i}]`, reading)
+/** Distance between the edges as read: its mean over people, of how many, and its spread. */
+function edgesOf({ leftEdges, rightEdges, edgeSpread }: Reading) {
+  const count = leftEdges.length
+  if (count === 0) throw new RangeError('leftEdges must not be empty')
+  if (rightEdges.length !== count)
+    throw new RangeError(`rightEdges must be as many as leftEdges (${count}), got ${rightEdges.length}`)
+  const pairs = leftEdges.map((leftMetres, i) => {
+    requireFinite(`leftEdges[${i}]`, leftMetres)
+    const rightMetres = rightEdges[i] as number
+    requireFinite(`rightEdges[${i}]`, rightMetres)
+    return { leftMetres, rightMetres }
   })
-  if (readings.length === 1) return { count: 1, mean: readings[0] as number, standardError: 0 }
-  const { count, mean, standardDeviation } = moments(readings)
-  return { count, mean, standardError: standardDeviation / Math.sqrt(count) }
+  if (edgeSpread) {
+    requireNotNegative('edgeSpread.standardDeviationMetres', edgeSpread.standardDeviationMetres)
+    requireDegreesOfFreedom('edgeSpread.degreesOfFreedom', edgeSpread.degreesOfFreedom)
+  }
+  const sum = pairs.reduce((total, { leftMetres, rightMetres }) => total + (rightMetres - leftMetres), 0)
+  return { distance: sum / count, count, spread: edgeSpread ?? pooledEdgeSpread([pairs]) }
 }
 
 /** A scale behind the beam is seen larger than the beam; a mirrored scale takes the parallax out. */

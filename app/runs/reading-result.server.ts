@@ -1,4 +1,4 @@
-import { type ReadingBench, readingBudget } from '../analysis/reading.ts'
+import { type EdgeSpread, type ReadingBench, readingBudget } from '../analysis/reading.ts'
 import { readingBench } from '../benches/reading-bench.ts'
 import type { readings } from '../db/schema.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
@@ -20,7 +20,11 @@ function benchOf(config: BenchConfig): ReadingBench {
  */
 export function workOut(
   reading: typeof readings.$inferSelect,
-  { config, edges }: { config: BenchConfig; edges: ReadingView['edges'] },
+  {
+    config,
+    edges,
+    edgeSpread,
+  }: { config: BenchConfig; edges: ReadingView['edges']; edgeSpread: EdgeSpread | null },
 ): ReadingView['result'] {
   if (edges.length === 0) return null
   try {
@@ -35,6 +39,7 @@ export function workOut(
       currentDegreesOfFreedom: Math.max(1, reading.coilEffectiveCount - 1),
       leftEdges: edges.map(({ leftMetres }) => leftMetres),
       rightEdges: edges.map(({ rightMetres }) => rightMetres),
+      edgeSpread,
     })
     return {
       chargeToMass: budget.value,

@@ -1,4 +1,5 @@
 import { and, asc, eq, sql } from 'drizzle-orm'
+import { pooledEdgeSpread } from '../analysis/edge-spread.ts'
 import type { Database } from '../db/client.server.ts'
 import { benchRevisions, edges, people, readings, strikes } from '../db/schema.ts'
 import {
@@ -63,6 +64,8 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
     findEdges(db, runId),
     findStrikes(db, runId),
   ])
+  const standing = rows.filter(({ reading }) => !strikeOf.has(reading.id))
+  const edgeSpread = pooledEdgeSpread(standing.map(({ reading }) => edgesOf.get(reading.id) ?? []))
   return rows.map(({ reading, by, config }) => {
     const newest = edgesOf.get(reading.id) ?? []
     const { anodeMeter, coilMeter } = config.instruments
@@ -80,7 +83,7 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       anodeStandardErrorVolts: reading.uAnodeVolts,
       coilStandardErrorAmps: reading.uCoilAmps,
       edges: newest,
-      result: workOut(reading, { config, edges: newest }),
+      result: workOut(reading, { config, edges: newest, edgeSpread }),
       struck: strikeOf.get(reading.id) ?? null,
     }
   })

@@ -20,7 +20,7 @@ describe('the budget of a reading', () => {
     uCurrentAmps: 0.0004,
     currentDegreesOfFreedom: 22,
     leftEdges: [-0.0612, -0.0608, -0.0617],
-    rightEdges: [0.0605, 0.0611],
+    rightEdges: [0.0605, 0.0611, 0.0609],
   }
   const result = readingBudget({ ...reading, bench })
   const emOf = (change: Partial<Reading>, other: ReadingBench = bench) =>
@@ -66,9 +66,8 @@ describe('the budget of a reading', () => {
       coilResolution: perAmp,
       coilMeter: perAmp,
       leftEdgeResolution: perLeft,
-      leftEdgeSpread: perLeft,
       rightEdgeResolution: -perLeft,
-      rightEdgeSpread: slope((by) => emOf({ rightEdges: shifted(reading.rightEdges, by) }), 1e-4),
+      edgeSpread: slope((by) => emOf({ rightEdges: shifted(reading.rightEdges, by) }), 1e-4),
       scaleDistance: slope((by) => emOf({}, behind(by)), 1e-3),
       coilTurns: slope((by) => emOf({}, widened(0, 0, by)), 0.5),
       coilRadius: slope((by) => emOf({}, widened(by, 0, 0)), 5e-4),
@@ -103,8 +102,8 @@ describe('the budget of a reading', () => {
       // half a millimetre division
       leftEdgeResolution: 0.0005 / Math.sqrt(12),
       rightEdgeResolution: 0.0005 / Math.sqrt(12),
-      leftEdgeSpread: Math.sqrt((0.00003 ** 2 + 0.00043 ** 2 + 0.00047 ** 2) / 2 / 3),
-      rightEdgeSpread: 0.0006 / 2,
+      // Distances of 121.7, 121.9 and 122.6 mm: deviations −11/30, −5/30 and 16/30 mm from their mean.
+      edgeSpread: Math.sqrt((11 ** 2 + 5 ** 2 + 16 ** 2) / 30 ** 2 / 2 / 3) / 1000,
       scaleDistance: 0.003,
       coilTurns: 0.2,
       coilRadius: 0.0008,
@@ -112,7 +111,7 @@ describe('the budget of a reading', () => {
       beamEdge: 0.0004 / Math.sqrt(3),
     }
     for (const [name, value] of Object.entries(expected)) {
-      expectNear(u(name), value, { rel: name === 'leftEdgeSpread' ? 0.01 : 1e-12 })
+      expectNear(u(name), value, { rel: name === 'edgeSpread' ? 1e-9 : 1e-12 })
     }
   })
 
@@ -146,14 +145,12 @@ describe('the budget of a reading', () => {
     const part = (name: string) => result.contributions[name]?.contribution ?? Number.NaN
     const rest = Math.sqrt(
       Object.entries(result.contributions)
-        .filter(
-          ([name]) => !['anodeVoltage', 'coilCurrent', 'leftEdgeSpread', 'rightEdgeSpread'].includes(name),
-        )
+        .filter(([name]) => !['anodeVoltage', 'coilCurrent', 'edgeSpread'].includes(name))
         .reduce((sum, [, { contribution }]) => sum + contribution ** 2, 0),
     )
     const nu = effectiveDegreesOfFreedom(
-      [part('anodeVoltage'), part('coilCurrent'), part('leftEdgeSpread'), part('rightEdgeSpread'), rest],
-      [14, 22, 2, 1, Number.POSITIVE_INFINITY],
+      [part('anodeVoltage'), part('coilCurrent'), part('edgeSpread'), rest],
+      [14, 22, 2, Number.POSITIVE_INFINITY],
     )
     expectNear(result.effectiveDegreesOfFreedom, nu, { rel: 1e-10 })
     expectNear(result.coverageFactor, coverageFactor(nu), { rel: 1e-12 })
@@ -163,7 +160,7 @@ describe('the budget of a reading', () => {
   it('keeps the resolution of the edges with one reader, and has no spread to add', () => {
     const single = readingBudget({ ...reading, leftEdges: [-0.0612], rightEdges: [0.0608], bench })
     expect(single.contributions.leftEdgeResolution?.contribution).toBeGreaterThan(0)
-    expect(single.contributions.leftEdgeSpread).toBeUndefined()
+    expect(single.contributions.edgeSpread).toBeUndefined()
     const agreeing = readingBudget({
       ...reading,
       leftEdges: [-0.0612, -0.0612],
@@ -171,6 +168,33 @@ describe('the budget of a reading', () => {
       bench,
     })
     expectNear(agreeing.standardUncertainty, single.standardUncertainty, { rel: 1e-12 })
+  })
+
+  it('takes the spread of the edges as the run has it, also with one reader, and divides it by √n', () => {
+    const edgeSpread = { standardDeviationMetres: 0.0004, degreesOfFreedom: 9 }
+    const spreadOf = (edges: Pick<Reading, 'leftEdges' | 'rightEdges'>) => {
+      const { contributions } = readingBudget({ ...reading, ...edges, edgeSpread, bench })
+      const { contribution, sensitivity, common } = contributions.edgeSpread ?? {
+        contribution: Number.NaN,
+        sensitivity: 1,
+        common: true,
+      }
+      expect(common).toBe(false)
+      return contribution / Math.abs(sensitivity)
+    }
+    expectNear(spreadOf({ leftEdges: [-0.0612], rightEdges: [0.0608] }), 0.0004, { rel: 1e-12 })
+    expectNear(spreadOf(reading), 0.0004 / Math.sqrt(3), { rel: 1e-12 })
+    const alone = readingBudget({ ...reading, leftEdges: [-0.0612], rightEdges: [0.0608], edgeSpread, bench })
+    const parts = Object.entries(alone.contributions).map(([name, { contribution }]) => [name, contribution])
+    const nu: Record<string, number> = { anodeVoltage: 14, coilCurrent: 22, edgeSpread: 9 }
+    expectNear(
+      alone.effectiveDegreesOfFreedom,
+      effectiveDegreesOfFreedom(
+        parts.map(([, part]) => part as number),
+        parts.map(([name]) => nu[name as string] ?? Number.POSITIVE_INFINITY),
+      ),
+      { rel: 1e-12 },
+    )
   })
 
   it('takes half of the measured current through each coil in parallel, all of it in series', () => {
@@ -218,9 +242,18 @@ describe('the budget of a reading', () => {
     ['currentAmps', () => emOf({ currentAmps: Number.NaN })],
     ['uCurrentAmps', () => emOf({ uCurrentAmps: Number.POSITIVE_INFINITY })],
     ['leftEdges', () => emOf({ leftEdges: [] })],
-    ['rightEdges[1]', () => emOf({ rightEdges: [0.06, Number.NaN] })],
+    ['rightEdges[1]', () => emOf({ rightEdges: [0.06, Number.NaN, 0.06] })],
     ['rightEdges', () => emOf({ leftEdges: [0.07] })],
-    ['leftEdges', () => emOf({ leftEdges: [-0.4] })],
+    ['rightEdges', () => emOf({ leftEdges: [0.07], rightEdges: [0.06] })],
+    [
+      'edgeSpread.degreesOfFreedom',
+      () => emOf({ edgeSpread: { standardDeviationMetres: 1, degreesOfFreedom: 0 } }),
+    ],
+    [
+      'edgeSpread.standardDeviationMetres',
+      () => emOf({ edgeSpread: { standardDeviationMetres: -1, degreesOfFreedom: 1 } }),
+    ],
+    ['leftEdges', () => emOf({ leftEdges: [-0.4], rightEdges: [0.06] })],
     [
       'scale.eyeDistanceMetres',
       () => emOf({}, { ...bench, scale: { ...bench.scale, eyeDistanceMetres: 0.05 } }),

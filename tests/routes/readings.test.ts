@@ -257,6 +257,29 @@ describe('Edges', () => {
     expect(await site.db.$count(edges, eq(edges.readingId, id))).toBe(3)
   })
 
+  it('read by several people tell the spread for the whole run, but not where the reading is struck', async () => {
+    const { id } = await newest()
+    await enter(site.student, id, '3.35', '11.15')
+    const alone = (await newest()).result
+    await take(site.student)
+    const second = (await newest()).id
+    await enter(site.student, second, '3.30', '11.20')
+    await enter(site.partner, second, '3.40', '11.10')
+    const first = async () => (await view()).readings.find((reading) => reading.id === id)?.result
+    const pooled = await first()
+    // Distances of 79 and 77 mm: s = 2 mm/√2 with one degree of freedom. e/m goes as 1/d²: 2·u(d)/d of it is added.
+    const added = (2 * (0.002 / Math.SQRT2)) / 0.078
+    expectNear(
+      ((pooled?.standardUncertainty ?? 0) ** 2 - (alone?.standardUncertainty ?? 0) ** 2) ** 0.5 /
+        (alone?.chargeToMass ?? 1),
+      added,
+      { rel: 0.05 },
+    )
+    expect(pooled?.coverageFactor).toBeGreaterThan(5)
+    await strikeOut(site.student, second, 'Knocked.')
+    expect(await first()).toEqual(alone)
+  })
+
   it.each([
     ['', '11', 'left', 'Type the left edge in centimetres.'],
     ['3', 'x', 'right', '“x” is not a number. Type the right edge in centimetres, as in 1.5 or 1,5.'],

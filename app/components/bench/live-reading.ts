@@ -1,4 +1,10 @@
-import { orbitMoved, type ReadingBench, type ReadingResult, readingBudget } from '#app/analysis/reading.ts'
+import {
+  orbitMoved,
+  pooledEdgeSpread,
+  type ReadingBench,
+  type ReadingResult,
+  readingBudget,
+} from '#app/analysis/reading.ts'
 import type { ReadingView } from '#app/benches/bench-view.server.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import { readingWithEdges } from './logbook-rows.ts'
@@ -43,6 +49,7 @@ export function liveReading({ readings, state, bench, revision }: Input): LiveRe
       uCurrentAmps: current.standardDeviation ?? 0,
       leftEdges,
       rightEdges,
+      edgeSpread: pooledEdgeSpread(readings.filter(({ struck }) => !struck).map(({ edges }) => edges)),
     })
     const hasMoved = orbitMoved({
       before: {
