@@ -1,3 +1,4 @@
+import { existsSync } from 'node:fs'
 import * as z from 'zod'
 
 const defaultSessionSecret = 'a-session-secret-for-the-demo-only'
@@ -29,6 +30,11 @@ const environmentSchema = z
   })
 
 export type Environment = z.infer<typeof environmentSchema>
+
+/** For commands that are not started by `npm start`: what stands in `.env`, where the environment does not say otherwise. */
+export function readEnvironmentFile(): void {
+  if (existsSync('.env')) process.loadEnvFile('.env')
+}
 
 let parsed: Environment | undefined
 
