@@ -135,3 +135,25 @@ test('A technician pulls the plug in ten ways: the terminal is down each time, a
     await expectAccessible(page)
   })
 })
+
+test('The page of the person at the controls is closed: the bench trips, and whoever watches is told', async ({
+  site,
+  signInAs,
+}) => {
+  const benchId = 'bench-2'
+  const page = await signInAs('student')
+  await acknowledgeCautions(page, benchId)
+  await takeControls(page)
+  await warmUp(page)
+  await set(page, { volts: 120, amps: 1 })
+  await expectTerminal(site, benchId, 'live')
+  const watcher = await signInAs('instructor', { path: `/benches/${benchId}` })
+  await expect(watcher.getByText(/Kofi Adeyemi/).first()).toBeVisible()
+
+  await page.close()
+  const trip = watcher.getByRole('region', { name: 'Trip' })
+  await expect(trip).toContainText(/page of Kofi Adeyemi.*is gone/, { timeout: 15_000 })
+  await expect(trip).toContainText(/off commanded/i)
+  await expect(trip).toContainText(/take the controls/i)
+  await expectTerminal(site, benchId, 'down')
+})
