@@ -23,7 +23,7 @@ export type BridgeAnswer<Reply> =
 const answerMilliseconds = 4000
 
 const treatAsLive =
-  'Outputs that were on are still on: treat the tube as live, and use the emergency stop if it has to be off now.'
+  'Outputs that were on may still be on: treat the tube as live, and use the emergency stop if it has to be off now.'
 
 /** Codes of a connection that was never made, so that no byte of the request has left this machine. */
 const neverConnected = new Set(['ECONNREFUSED', 'ENOTFOUND', 'EHOSTUNREACH', 'ENETUNREACH', 'EAI_AGAIN'])
