@@ -4,6 +4,7 @@ import { startSession } from '#app/auth/sessions.server.ts'
 import { type AppHandler, startApp } from '#tests/support/app-handler.ts'
 import { type ClassSite, openClassSite } from '#tests/support/class-site.ts'
 import { ownDatabaseUrl } from '#tests/support/database.ts'
+import { freePort } from '#tests/support/processes.ts'
 
 let app: AppHandler
 let site: ClassSite
@@ -12,8 +13,8 @@ let cookie: string
 
 beforeAll(async () => {
   vi.stubEnv('DATABASE_URL', ownDatabaseUrl())
-  // Nothing listens on the discard port: there is no bridge here.
-  vi.stubEnv('BRIDGE_URL', 'http://127.0.0.1:9')
+  // Nothing listens there: this site has no bridge.
+  vi.stubEnv('BRIDGE_URL', `http://127.0.0.1:${await freePort()}`)
   site = await openClassSite()
   app = await startApp()
   origin = await app.listen()

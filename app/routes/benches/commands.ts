@@ -1,20 +1,21 @@
-import { data, href, redirect } from 'react-router'
+import { redirect } from 'react-router'
 import { readForm } from '../../auth/request-body.server.ts'
+import { answer } from '../../benches/answer.server.ts'
 import { answerAlways } from '../../benches/answer-always.ts'
+import { benchPath } from '../../benches/bench-path.ts'
 import { commandBench } from '../../benches/command.server.ts'
 import { databaseContext, personContext } from '../../context.ts'
 import type { Route } from './+types/commands'
 
-export const loader = ({ params }: Route.LoaderArgs) =>
-  redirect(href('/benches/:benchId', { benchId: params.benchId }))
+export const loader = ({ params }: Route.LoaderArgs) => redirect(benchPath(params))
 
 export async function action({ request, params, context }: Route.ActionArgs) {
-  const { status, reply } = await commandBench(context.get(databaseContext), {
+  const answered = await commandBench(context.get(databaseContext), {
     benchId: params.benchId,
     person: context.get(personContext),
     form: await readForm(request),
   })
-  return data(reply, { status })
+  return answer(request, answered, benchPath(params))
 }
 
 export const clientAction = ({ serverAction }: Route.ClientActionArgs) => answerAlways({ serverAction })

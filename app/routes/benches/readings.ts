@@ -1,18 +1,19 @@
-import { data, href, redirect } from 'react-router'
+import { redirect } from 'react-router'
+import { answer } from '../../benches/answer.server.ts'
 import { answerAlways } from '../../benches/answer-always.ts'
+import { benchPath } from '../../benches/bench-path.ts'
 import { databaseContext, personContext } from '../../context.ts'
 import { captureReading } from '../../runs/capture.server.ts'
 import type { Route } from './+types/readings'
 
-export const loader = ({ params }: Route.LoaderArgs) =>
-  redirect(href('/benches/:benchId', { benchId: params.benchId }))
+export const loader = ({ params }: Route.LoaderArgs) => redirect(benchPath(params))
 
-export async function action({ params, context }: Route.ActionArgs) {
-  const { status, reply } = await captureReading(context.get(databaseContext), {
+export async function action({ request, params, context }: Route.ActionArgs) {
+  const answered = await captureReading(context.get(databaseContext), {
     benchId: params.benchId,
     person: context.get(personContext),
   })
-  return data(reply, { status })
+  return answer(request, answered, benchPath(params))
 }
 
 export const clientAction = ({ serverAction }: Route.ClientActionArgs) => answerAlways({ serverAction })

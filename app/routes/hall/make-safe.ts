@@ -1,5 +1,6 @@
-import { data, href, redirect } from 'react-router'
+import { href, redirect } from 'react-router'
 import { requireCapability } from '../../auth/guards.server.ts'
+import { answer } from '../../benches/answer.server.ts'
 import { makeRoomSafe } from '../../benches/command.server.ts'
 import { databaseContext, personContext } from '../../context.ts'
 import type { Route } from './+types/make-safe'
@@ -8,9 +9,9 @@ export const middleware: Route.MiddlewareFunction[] = [requireCapability('make-r
 
 export const loader = () => redirect(href('/hall'))
 
-export async function action({ context }: Route.ActionArgs) {
-  const { status, reply } = await makeRoomSafe(context.get(databaseContext), {
+export async function action({ request, context }: Route.ActionArgs) {
+  const answered = await makeRoomSafe(context.get(databaseContext), {
     person: context.get(personContext),
   })
-  return data(reply, { status })
+  return answer(request, answered, href('/hall'))
 }
