@@ -29,7 +29,7 @@ const environmentSchema = z
     message: 'is the default one: set your own before you run Coilside in production',
   })
 
-export type Environment = z.infer<typeof environmentSchema>
+type Environment = z.infer<typeof environmentSchema>
 
 /** For commands that are not started by `npm start`: what stands in `.env`, where the environment does not say otherwise. */
 export function readEnvironmentFile(): void {

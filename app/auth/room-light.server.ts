@@ -2,7 +2,7 @@ import { createCookie } from 'react-router'
 import * as z from 'zod'
 
 export const roomLightSchema = z.enum(['lit', 'dark'])
-export type RoomLight = z.infer<typeof roomLightSchema>
+type RoomLight = z.infer<typeof roomLightSchema>
 
 /** Beside the account's own setting, so that the server renders the right look for someone not signed in as well. */
 const cookie = createCookie('coilside_room_light', { path: '/', sameSite: 'lax', maxAge: 365 * 86_400 })

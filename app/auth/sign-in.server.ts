@@ -8,7 +8,7 @@ import { countAttempt, forgetAttempts } from './attempts.server.ts'
 import { isKnownBrowser } from './known-browser.server.ts'
 import { passwordMatches } from './password.server.ts'
 
-export const signInSchema = z.object({
+const signInSchema = z.object({
   email: z
     .string()
     .trim()

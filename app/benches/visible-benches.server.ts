@@ -8,7 +8,7 @@ import type { BenchConfig } from '../protocol/bench-config.ts'
 import type { Role } from '../safety/types.ts'
 
 export type Watcher = Pick<Person, 'id' | 'role'>
-export type VisibleBench = { id: string; name: string; place: string; config: BenchConfig }
+type VisibleBench = { id: string; name: string; place: string; config: BenchConfig }
 
 /** The condition on `benches` that leaves the ones that a person may watch: all, or those of their classes, or none. */
 export function visibleTo(db: Database | Transaction, person: Watcher): SQL | undefined {

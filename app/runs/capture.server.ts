@@ -113,7 +113,7 @@ function sampleRows({ samples, times, statistics }: Capture) {
 }
 
 /** Little-endian float64, NaN where there was no reading. */
-export function packDoubles(values: (number | null)[]): Buffer {
+function packDoubles(values: (number | null)[]): Buffer {
   const buffer = Buffer.alloc(values.length * 8)
   for (const [index, value] of values.entries()) buffer.writeDoubleLE(value ?? Number.NaN, index * 8)
   return buffer

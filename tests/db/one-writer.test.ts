@@ -11,6 +11,7 @@ import { action as roomLight } from '#app/routes/account/room-light.ts'
 import { storeCapture } from '#app/runs/capture.server.ts'
 import { enterEdges } from '#app/runs/edges.server.ts'
 import { strikeReading } from '#app/runs/strike.server.ts'
+import { bareCapture } from '#tests/support/bare-capture.ts'
 import { type ClassSite, openClassSite } from '#tests/support/class-site.ts'
 import { formRequest, ownDatabaseUrl, routeArgs, routeContext } from '#tests/support/database.ts'
 
@@ -33,19 +34,6 @@ const events = (first: number, count: number): BenchEvent[] =>
     data: {},
   }))
 
-const figures = { standardDeviation: 0, standardError: 0, effectiveCount: 4, count: 4 }
-const capture = {
-  benchId: 'bench-1',
-  revision: 1,
-  at: 1_780_000_000,
-  windowSeconds: 5,
-  polarity: 1 as const,
-  times: [],
-  samples: {},
-  statistics: { anodeVolts: { ...figures, mean: 200 }, coilAmps: { ...figures, mean: 1.5 } },
-  states: {},
-}
-
 const form = (fields: Record<string, string>) => {
   const data = new FormData()
   for (const [name, value] of Object.entries(fields)) data.set(name, value)
@@ -55,7 +43,7 @@ const form = (fields: Record<string, string>) => {
 describe('The one writer of the database', () => {
   it('lets every kind of write through while batches of the bridge are being stored, and holds nothing up', async () => {
     const { db, student, partner } = site
-    await storeCapture(db, { capture, personId: student.id })
+    await storeCapture(db, { capture: bareCapture, personId: student.id })
     const [reading] = await db.select().from(readings)
     const at = { benchId: 'bench-1', readingId: reading?.id ?? '' }
     const cookie = (await startSession(student.id)).split(';')[0] ?? ''
@@ -78,7 +66,7 @@ describe('The one writer of the database', () => {
       enterEdges(db, { ...at, person: student, form: form({ left: '3', right: '11' }) }),
       enterEdges(db, { ...at, person: partner, form: form({ left: '3.1', right: '11' }) }),
       strikeReading(db, { ...at, person: student, form: form({ reason: 'Knocked.' }) }),
-      storeCapture(db, { capture, personId: partner.id }),
+      storeCapture(db, { capture: bareCapture, personId: partner.id }),
       batch(1201),
     ])
     // Two writers at once would stand still for the busy time limit of two seconds, and one of them fail.
@@ -93,7 +81,7 @@ describe('The one writer of the database', () => {
 
   it('takes no edges that come after the strike, however close', async () => {
     const { db, student } = site
-    await storeCapture(db, { capture, personId: student.id })
+    await storeCapture(db, { capture: bareCapture, personId: student.id })
     const reading = (await db.select().from(readings)).at(-1)
     const at = { benchId: 'bench-1', readingId: reading?.id ?? '', person: student }
     const [struck, entered] = await Promise.all([

@@ -5,6 +5,7 @@ import { edges, readings, runs, strikes } from '#app/db/schema.ts'
 import routes from '#app/routes.ts'
 import { storeCapture } from '#app/runs/capture.server.ts'
 import { type AppHandler, startApp } from '#tests/support/app-handler.ts'
+import { bareCapture } from '#tests/support/bare-capture.ts'
 import { offState } from '#tests/support/bench-state.ts'
 import { type ClassSite, openClassSite } from '#tests/support/class-site.ts'
 import { ownDatabaseUrl } from '#tests/support/database.ts'
@@ -37,24 +38,12 @@ afterAll(async () => {
 beforeEach(async () => {
   for (const table of ['edges', 'strikes', 'reading_samples', 'readings', 'runs'])
     await site.db.run(sql.raw(`delete from ${table}`))
-  const figures = { standardDeviation: 0, standardError: 0, effectiveCount: 4, count: 4 }
-  const capture = {
-    benchId: 'bench-1',
-    revision: 1,
-    at: 1_780_000_000,
-    windowSeconds: 5,
-    polarity: 1 as const,
-    times: [],
-    samples: {},
-    statistics: { anodeVolts: { ...figures, mean: 200 }, coilAmps: { ...figures, mean: 1.5 } },
-    states: {},
-  }
-  await storeCapture(site.db, { capture, personId: site.partner.id })
+  await storeCapture(site.db, { capture: bareCapture, personId: site.partner.id })
   readingId = (await site.db.query.readings.findFirst())?.id ?? ''
   bridge.asked.length = 0
   bridge.answer = ({ path }) => {
     if (path === '/make-safe') return { body: { benches: [] } }
-    if (path.endsWith('/captures')) return { body: { accepted: true, capture } }
+    if (path.endsWith('/captures')) return { body: { accepted: true, capture: bareCapture } }
     return { body: { accepted: true, refusals: [], answer: 'Done.', state: offState('bench-1') } }
   }
 })

@@ -3,6 +3,7 @@ import { startSession } from '#app/auth/sessions.server.ts'
 import { edges, readings } from '#app/db/schema.ts'
 import { storeCapture } from '#app/runs/capture.server.ts'
 import { type AppHandler, startApp } from '#tests/support/app-handler.ts'
+import { bareCapture } from '#tests/support/bare-capture.ts'
 import { type ClassSite, openClassSite } from '#tests/support/class-site.ts'
 import { ownDatabaseUrl } from '#tests/support/database.ts'
 import { freePort } from '#tests/support/processes.ts'
@@ -20,19 +21,7 @@ beforeAll(async () => {
   vi.stubEnv('BRIDGE_URL', `http://127.0.0.1:${await freePort()}`)
   site = await openClassSite()
   app = await startApp()
-  const figures = { standardDeviation: 0, standardError: 0, effectiveCount: 4, count: 4 }
-  const capture = {
-    benchId: 'bench-1',
-    revision: 1,
-    at: 1_780_000_000,
-    windowSeconds: 5,
-    polarity: 1 as const,
-    times: [],
-    samples: {},
-    statistics: { anodeVolts: { ...figures, mean: 200 }, coilAmps: { ...figures, mean: 1.5 } },
-    states: {},
-  }
-  await storeCapture(site.db, { capture, personId: site.student.id })
+  await storeCapture(site.db, { capture: bareCapture, personId: site.student.id })
   readingId = (await site.db.select().from(readings))[0]?.id ?? ''
 }, 60_000)
 afterAll(() => app.close())

@@ -231,6 +231,18 @@ describe('The room light', () => {
     expect(await readRoomLight(new Request('http://127.0.0.1:3000/'))).toBe('lit')
   })
 
+  it('leaves the page where it is when the web application does not answer or fails', async () => {
+    const { clientAction } = await import('#app/routes/account/room-light.ts')
+    const failures = [new TypeError('Failed to fetch'), new Error('Unexpected Server Error')]
+    for (const failure of failures) {
+      const serverAction = () => Promise.reject(failure)
+      expect(await clientAction({ serverAction } as never)).toMatchObject({
+        data: { ok: false, refusals: [{ code: 'app-silent' }] },
+        init: { status: 503 },
+      })
+    }
+  })
+
   it('refuses any other word', async () => {
     const { db } = await site()
     const { action } = await import('#app/routes/account/room-light.ts')
