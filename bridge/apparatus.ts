@@ -38,6 +38,8 @@ export class Apparatus {
   readonly statuses: ChannelStatuses
   readonly hertz: number
   prepared = false
+  /** How often the supply's line has been opened: what was prepared on a former one counts for nothing. */
+  supplyOpenings = 0
   values: ChannelValues = noValues()
   readonly lastGoodAt: Record<Channel, number | null> = noValues()
   interlock: InterlockReading | null = null
@@ -75,6 +77,7 @@ export class Apparatus {
       instrument.onStatus((status, reason) => {
         if (this.#isClosed || status === 'opening' || status === 'closed') return
         if (status === 'lost') this.#forget(instrument.name)
+        else if (instrument === this.instruments.supply) this.supplyOpenings++
         options.onLine(instrument.name, status === 'open', reason)
       })
     }
@@ -107,8 +110,9 @@ export class Apparatus {
   #take(at: number, values: ChannelValues): void {
     this.values = values
     for (const channel of channels) if (values[channel] !== null) this.lastGoodAt[channel] = at
-    const volts = values.anodeVolts ?? values.anodeSupplyVolts
-    if (volts !== null) this.anodeMeasured = { volts, at }
+    // Of two that disagree the higher one is what has to be feared.
+    const volts = [values.anodeVolts, values.anodeSupplyVolts].filter((value) => value !== null)
+    if (volts.length > 0) this.anodeMeasured = { volts: Math.max(...volts), at }
     this.ring.push(at, values)
     this.statuses.add(at, values, this.outputs.views)
     this.#recorder.add(this.#options.wallOf(at), values)

@@ -8,7 +8,7 @@ import { Apparatus, lineWords } from './apparatus.ts'
 import type { Bus } from './bus.ts'
 import { captureFrom } from './capture.ts'
 import type { Clock } from './clock.ts'
-import { execute, refusalOfError } from './commands.ts'
+import { bringsUp, execute, refusalOfError } from './commands.ts'
 import { Controls } from './controls.ts'
 import { Guard, type Report } from './guard.ts'
 import { lostLines } from './instrument-set.ts'
@@ -36,6 +36,11 @@ export type BenchOptions = {
   onSummaries: (summaries: UnnumberedSummary[]) => void
 }
 
+const askedBefore: Refusal = {
+  code: 'busy',
+  sentence: 'The outputs were taken down after this was asked: see why, then ask again.',
+}
+
 const off = { on: false, asked: 0, commanded: 0, changedAt: 0 }
 
 /** One bench: keeps its apparatus, judges it on every sample and every tick, and carries out what is permitted. */
@@ -48,6 +53,7 @@ export class Bench {
   #apparatus: Apparatus | null = null
   #pending: BenchConfig | null | undefined
   #isConfiguring = false
+  #isEnding = false
   #turn: Promise<unknown> = Promise.resolve()
   #stateAt = Number.NEGATIVE_INFINITY
   #isChanged = true
@@ -118,18 +124,29 @@ export class Bench {
 
   /** Carries out a command, or says why not. One at a time, but for make safe, which waits for nothing. */
   command(actor: Actor, command: Command): Promise<CommandReply> {
-    if (command.kind === 'make-safe') return this.#decide(actor, command)
-    const run = this.#turn.then(() => this.#decide(actor, command))
+    const { takeDowns } = this.#guard
+    if (command.kind === 'make-safe') return this.#decide(actor, command, takeDowns)
+    const run = this.#turn.then(() => this.#decide(actor, command, takeDowns))
     this.#turn = run.catch(() => undefined)
     return run
   }
 
-  async #decide(actor: Actor, command: Command): Promise<CommandReply> {
+  /** Nothing is switched on any more. */
+  end(): void {
+    this.#isEnding = true
+  }
+
+  /** `takeDowns` as they were when it was asked. */
+  async #decide(actor: Actor, command: Command, takeDowns: number): Promise<CommandReply> {
     this.controls.noteCommand(actor)
     this.#guard.evaluate()
     const view = this.view()
     const { warmUp, trip } = this.machine
     let refusals = refusalsFor({ view, warmUp, trip, actor, command })
+    if (bringsUp(command)) {
+      if (this.#isEnding) refusals.push({ code: 'busy', sentence: 'The bridge is being stopped.' })
+      else if (takeDowns !== this.#guard.takeDowns) refusals.push(askedBefore)
+    }
     let answer = ''
     if (refusals.length === 0) {
       try {
@@ -201,6 +218,7 @@ export class Bench {
   }
 
   async close(): Promise<void> {
+    this.#isEnding = true
     clearInterval(this.#timer)
     await this.#apparatus?.close()
   }
@@ -238,7 +256,7 @@ export class Bench {
       const former = this.#apparatus
       this.#apparatus = null
       await former?.close()
-      if (config !== null) this.#openApparatus(config)
+      if (config !== null && !this.#isEnding) this.#openApparatus(config)
     } catch (error) {
       this.report({ kind: 'warning', sentence: `The configuration cannot be used: ${String(error)}.` })
     } finally {

@@ -140,6 +140,7 @@ export async function createBridge(options: BridgeOptions): Promise<Bridge> {
   return {
     address: `http://${options.host.includes(':') ? `[${options.host}]` : options.host}:${port}`,
     async close() {
+      room.end()
       await room.makeSafe('The bridge is being stopped.')
       stopCameras()
       telemetry.close()

@@ -1,5 +1,5 @@
 import type { Command } from '#app/protocol/commands.ts'
-import type { Actor, Refusal } from '#app/safety/types.ts'
+import type { Actor, Output, Refusal } from '#app/safety/types.ts'
 import { inAmps, inVolts } from '#app/safety/words.ts'
 import type { Bench } from './bench.ts'
 import { InstrumentRefusedError, LineError } from './instruments/line-errors.ts'
@@ -66,16 +66,38 @@ export function refusalOfError(error: unknown): Refusal {
       sentence: `The supply refused it: ${error.number} ${error.text}. Check the supply and its interlock.`,
     }
   }
+  if (error instanceof OvertakenError || (error instanceof LineError && error.fault === 'overtaken')) {
+    return { code: 'busy', sentence: 'The outputs were taken down while this was under way.' }
+  }
   if (error instanceof LineError) {
     return {
       code: 'line-lost',
       sentence: `The supply did not confirm it (${error.message}): see what is measured before you go on.`,
     }
   }
-  if (error instanceof OvertakenError) {
-    return { code: 'busy', sentence: 'The outputs were taken down while this was under way.' }
-  }
   throw error
+}
+
+/** Whether it would bring something up, or take away what keeps it down. */
+export function bringsUp(command: Command): boolean {
+  switch (command.kind) {
+    case 'switch-heater':
+      return command.on
+    case 'set-anode':
+      return command.volts !== 0
+    case 'set-coils':
+      return command.amps !== 0
+    default:
+      return command.kind === 'set-polarity' || command.kind === 'reset-trip'
+  }
+}
+
+function wordsOfError(error: unknown): string {
+  try {
+    return refusalOfError(error).sentence
+  } catch {
+    return `The bridge failed at it: ${String(error)}.`
+  }
 }
 
 function outputsOf(bench: Bench): Outputs {
@@ -105,8 +127,10 @@ async function switchHeater(bench: Bench, outputs: Outputs, on: boolean): Promis
   // A cathode without its heater must not carry an anode voltage.
   if (outputs.views.anode.on) {
     const { supply } = bench.apparatus?.instruments ?? {}
-    outputs.drop(['anode'])
-    await supply?.switchOutput('anode', false, { urgent: true })
+    // A change of polarity ends with this, whatever it was at: the coils are not to be on between two polarities.
+    const down: Output[] = outputs.polarityChanging ? ['anode', 'coils'] : ['anode']
+    outputs.drop(down)
+    await Promise.all(down.map((output) => supply?.switchOutput(output, false, { urgent: true })))
     const { coils } = outputs.views
     if (coils.on) await outputs.set('coils', coils.asked)
     await outputs.switchHeater(false)
@@ -122,7 +146,7 @@ function setPolarity(bench: Bench, actor: Actor, polarity: 1 | -1): string {
   if (outputs.polarity === polarity) return `The coil polarity is ${word} already.`
   outputs
     .changePolarity(polarity)
-    .catch((error: unknown) => refusalOfError(error).sentence)
+    .catch((error: unknown) => wordsOfError(error))
     .then((done) => {
       if (done === true) {
         bench.report({

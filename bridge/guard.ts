@@ -12,7 +12,7 @@ import { anyOutputOn, type BenchView } from '#app/safety/view.ts'
 import { inSeconds } from '#app/safety/words.ts'
 import type { Apparatus } from './apparatus.ts'
 import type { Controls } from './controls.ts'
-import { clearSetpoints, shutDown, shutdownSentence } from './shutdown.ts'
+import { clearSetpoints, nothingCommanded, shutDown, shutdownSentence } from './shutdown.ts'
 
 export type Report = {
   kind: BenchEvent['kind']
@@ -39,6 +39,7 @@ export class Guard {
   #machine: Machine
   #shutdown: BenchState['shutdown'] = null
   #isWarned = false
+  #takeDowns = 0
 
   constructor(options: GuardOptions, startedAt: number) {
     this.#options = options
@@ -51,6 +52,11 @@ export class Guard {
 
   get shutdown(): BenchState['shutdown'] {
     return this.#shutdown
+  }
+
+  /** How often the outputs have been taken down: what was asked before the last time is not carried out after it. */
+  get takeDowns(): number {
+    return this.#takeDowns
   }
 
   reset(): void {
@@ -89,7 +95,7 @@ export class Guard {
     if (seen.warned && !this.#isWarned && seen.lost === null) {
       report({
         kind: 'warning',
-        sentence: `${holder.name} has given no sign for a while: without one, the bench is made safe in ${inSeconds(Math.round(left))}.`,
+        sentence: `${holder.name} has given no sign for a while: without one, make safe follows in ${inSeconds(Math.round(left))}.`,
         data: { until: wallOf(at + left) },
       })
       this.#options.onUrgent()
@@ -112,6 +118,9 @@ export class Guard {
       this.#machine = machine
       this.#act({ kind: 'trip', trip })
       this.#act({ kind: 'shutdown', cause: trip.happened, heater: true })
+    } else {
+      // Something may be on its way to being switched on.
+      this.#options.apparatus()?.outputs.drop(everything)
     }
     this.#options.onUrgent()
   }
@@ -152,12 +161,18 @@ export class Guard {
     const { view, wallOf, report } = this.#options
     const apparatus = this.#options.apparatus()
     const at = wallOf(view().at)
+    this.#takeDowns++
     apparatus?.outputs.drop(order)
     const supply = apparatus?.instruments.supply ?? null
     const steps = await shutDown(supply, order)
-    clearSetpoints(supply)
+    const views = apparatus?.outputs.views
+    // Not when one of them has been switched on again meanwhile.
+    if (!views?.anode.on && !views?.coils.on) clearSetpoints(supply)
     this.#shutdown = { at, cause, steps }
-    const sentence = shutdownSentence(steps, apparatus?.anodeMeasured ?? null, view().at)
+    const sentence =
+      supply === null
+        ? nothingCommanded
+        : shutdownSentence(steps, apparatus?.anodeMeasured ?? null, view().at)
     report({ kind, actor, sentence: `${cause} ${sentence}`, data: { steps } })
     this.#options.onUrgent()
     return sentence

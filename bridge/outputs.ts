@@ -35,6 +35,8 @@ export class Outputs {
   readonly #options: OutputsOptions
   readonly #ramps: Record<'anode' | 'coils', Ramp>
   #generation = 0
+  /** False while the supply may hold the relay the other way: a move that was sent and not confirmed. */
+  #isPolarityKnown = false
 
   constructor(options: OutputsOptions) {
     this.#options = options
@@ -54,7 +56,7 @@ export class Outputs {
     for (let attempt = 1; ; attempt++) {
       try {
         // The relay does not move before the coil current has died away.
-        await supply.setPolarity(this.polarity)
+        await this.#moveRelay(this.polarity)
         break
       } catch (error) {
         if (attempt === startTries) throw error
@@ -80,21 +82,24 @@ export class Outputs {
       this.#change('heater', { on: false, asked: 0, commanded: 0 })
       return
     }
-    await this.#arm()
+    const generation = this.#generation
+    await this.#arm(generation)
     const { nominal } = this.#options.limits.heaterVolts
-    await this.#whole(async () => {
+    await this.#whole('heater', generation, async (goOn) => {
       await supply.setVolts('heater', nominal)
+      goOn()
       this.#change('heater', { on: true, asked: nominal, commanded: nominal })
       await supply.switchOutput('heater', true)
-    }, 'heater')
+    })
   }
 
   /** Ramps an output to a value in volts or amperes; switches it on at zero first, and off once back at zero. */
   async set(output: 'anode' | 'coils', value: number): Promise<void> {
     const view = this.views[output]
     if (value > 0 && !view.on) {
-      await this.#arm()
-      await this.#whole(() => this.#switchOnAtZero(output), output)
+      const generation = this.#generation
+      await this.#arm(generation)
+      await this.#switchOnAtZero(output, generation)
     }
     this.#change(output, { asked: value })
     if (view.on) this.#ramps[output].to(value)
@@ -102,78 +107,106 @@ export class Outputs {
 
   /**
    * Anode to zero, coils to zero and read as zero, relay, and back. Resolves with whether the polarity was changed;
-   * when it was not, both outputs stay at zero.
+   * when it was not, both outputs are switched off at zero.
    */
   async changePolarity(polarity: Polarity): Promise<boolean> {
     if (polarity === this.polarity) return true
     const generation = this.#generation
     const isWanted = () => generation === this.#generation
     const { supply } = this.#options.instruments
+    let isDone = false
     this.polarityChanging = true
     this.#ramps.anode.to(0)
     this.#ramps.coils.to(0)
     try {
       if (!(await this.#until(() => this.#isAtZero(), isWanted))) return false
-      if (this.views.coils.on) await supply.switchOutput('coils', false)
+      if (this.views.coils.on) {
+        await supply.switchOutput('coils', false)
+        if (isWanted()) this.#change('coils', { on: false, commanded: 0 })
+      }
       if (!isWanted()) return false
-      await supply.setPolarity(polarity)
-      this.polarity = polarity
+      await this.#moveRelay(polarity)
       await wait(relaySettleSeconds)
       if (!isWanted()) return false
-      await this.#restore(isWanted)
+      await this.#restore(generation)
+      isDone = true
       return true
     } finally {
       if (isWanted()) {
         this.polarityChanging = false
+        if (!isDone) this.#stayAtZero()
         this.#options.onChange()
       }
     }
   }
 
-  async #restore(isWanted: () => boolean): Promise<void> {
+  async #moveRelay(polarity: Polarity): Promise<void> {
+    this.#isPolarityKnown = false
+    await this.#options.instruments.supply.setPolarity(polarity)
+    this.polarity = polarity
+    this.#isPolarityKnown = true
+  }
+
+  #stayAtZero(): void {
+    for (const output of ['anode', 'coils'] as const) {
+      this.#change(output, { asked: 0 })
+      if (this.views[output].on) this.#ramps[output].to(0)
+    }
+  }
+
+  async #restore(generation: number): Promise<void> {
+    const isWanted = () => generation === this.#generation
     const { anode, coils } = this.views
     if (coils.asked > 0) {
-      await this.#whole(() => this.#switchOnAtZero('coils'), 'coils')
+      await this.#switchOnAtZero('coils', generation)
       this.#ramps.coils.to(coils.asked)
       await this.#until(() => coils.commanded === coils.asked, isWanted)
-    } else {
-      this.#change('coils', { on: false, commanded: 0 })
     }
     if (isWanted() && anode.on) this.#ramps.anode.to(anode.asked)
   }
 
-  async #switchOnAtZero(output: 'anode' | 'coils'): Promise<void> {
+  #switchOnAtZero(output: 'anode' | 'coils', generation: number): Promise<void> {
     const { supply } = this.#options.instruments
-    if (output === 'anode') await supply.setVolts('anode', 0)
-    else await supply.setAmps('coils', 0)
-    this.#change(output, { on: true, commanded: 0 })
-    await supply.switchOutput(output, true)
+    return this.#whole(output, generation, async (goOn) => {
+      if (output === 'coils' && !this.#isPolarityKnown) await this.#moveRelay(this.polarity)
+      goOn()
+      if (output === 'anode') await supply.setVolts('anode', 0)
+      else await supply.setAmps('coils', 0)
+      goOn()
+      this.#change(output, { on: true, commanded: 0 })
+      await supply.switchOutput(output, true)
+    })
   }
 
   /**
    * Before the first output goes on, the supply is prepared again: it may have been switched off and on meanwhile, and
    * then knows nothing of its watchdog.
    */
-  async #arm(): Promise<void> {
-    const generation = this.#generation
+  async #arm(generation: number): Promise<void> {
     if (!this.anyOn) await this.prepare()
+    this.#mustBe(generation)
+  }
+
+  #mustBe(generation: number): void {
     if (generation !== this.#generation) throw new OvertakenError('The outputs were taken down meanwhile')
   }
 
-  /** Does it whole or not at all: the output is commanded off when a part of it fails or was overtaken. */
-  async #whole(work: () => Promise<void>, output: Output): Promise<void> {
-    const generation = this.#generation
+  /**
+   * Does it whole or not at all: the output is commanded off when a part of it fails or was overtaken. The work asks
+   * `goOn` before each further step, so that nothing of it is sent after the outputs were taken down.
+   */
+  async #whole(output: Output, generation: number, work: (goOn: () => void) => Promise<void>): Promise<void> {
     try {
-      await work()
+      this.#mustBe(generation)
+      await work(() => this.#mustBe(generation))
+      this.#mustBe(generation)
     } catch (error) {
       this.#change(output, { on: false, asked: 0, commanded: 0 })
-      this.#options.instruments.supply.switchOutput(output, false, { urgent: true }).catch(() => undefined)
+      this.#options.instruments.supply.switchOutput(output, false, { urgent: true }).catch(() => {
+        // What remains of it is found by the read-back.
+      })
       throw error
     }
-    if (generation === this.#generation) return
-    await this.#options.instruments.supply.switchOutput(output, false, { urgent: true })
-    this.#change(output, { on: false, asked: 0, commanded: 0 })
-    throw new OvertakenError('The outputs were taken down meanwhile')
   }
 
   #rampOf(output: 'anode' | 'coils'): Ramp {

@@ -17,6 +17,8 @@ export type Room = {
   ): Promise<{ benchId: string; answer: string }[]>
   /** Make safe as a page asks for it: one bench that it may watch, or the room if its ticket says so. */
   makeSafeFromPage(ticket: Ticket, benchId: string | null): Promise<void>
+  /** From here on nothing is switched on. */
+  end(): void
   close(): Promise<void>
 }
 
@@ -73,6 +75,9 @@ export function createRoom(options: RoomOptions): Room {
       }
       if (bench && isWatched) await bench.makeSafe(cause, ticket)
       else refuse(ticket, null, bench ? `You do not watch ${benchId}.` : 'There is no such bench.')
+    },
+    end() {
+      for (const bench of benches.values()) bench.end()
     },
     async close() {
       await Promise.all([...benches.values()].map((bench) => bench.close()))

@@ -32,6 +32,9 @@ export function clearSetpoints(supply: Supply | null): void {
   for (const sent of [supply?.setVolts('anode', 0), supply?.setAmps('coils', 0)]) sent?.catch(() => undefined)
 }
 
+export const nothingCommanded =
+  'Nothing could be commanded: no supply of this bench is known here. Anode: voltage unknown: treat as live.'
+
 /** What was commanded and what came of it, in words; names what was not confirmed. */
 export function shutdownSentence(
   steps: readonly ShutdownStep[],

@@ -14,6 +14,8 @@ const mostReadings = 3
  */
 export async function prepareSupply(apparatus: Apparatus, report: (report: Report) => void): Promise<void> {
   const { supply } = apparatus.instruments
+  const opening = apparatus.supplyOpenings
+  const isSame = () => supply.status === 'open' && apparatus.supplyOpenings === opening
   const found: Record<Output, number | null> = { heater: null, anode: null, coils: null }
   // A voltage that falls fast may be null for a reading or two.
   for (let reading = 0; reading < mostReadings && found.anode === null; reading++) {
@@ -24,9 +26,10 @@ export async function prepareSupply(apparatus: Apparatus, report: (report: Repor
   }
   const held = outputs.filter((output) => isHeld(output, found[output]))
   let isReported = false
-  while (supply.status === 'open') {
+  while (isSame()) {
     try {
       await apparatus.outputs.prepare()
+      if (!isSame()) return
       apparatus.prepared = true
       const before = held.length === 0 ? '' : ` ${capital(listed(held))} still held a value from before.`
       report({

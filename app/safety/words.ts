@@ -21,6 +21,9 @@ export function listed(words: readonly string[]): string {
 /** The sentence with a capital at its head. */
 export const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1)
 
+/** A voltage measured longer ago than this says nothing of now. */
+const knownSeconds = 5
+
 /**
  * What is known of the anode's voltage after an off command, in words. The software never calls a bench safe:
  * it says what was commanded, what was measured, and when.
@@ -28,5 +31,8 @@ export const capital = (text: string): string => text.charAt(0).toUpperCase() + 
 export function anodeKnowledge(measured: { volts: number; at: number } | null, now: number): string {
   if (measured === null) return 'off commanded, voltage unknown: treat as live'
   const age = Math.max(0, now - measured.at)
+  if (age > knownSeconds) {
+    return `off commanded, voltage unknown: treat as live (${inVolts(measured.volts)} was measured ${inSeconds(age)} ago)`
+  }
   return `off commanded, ${inVolts(measured.volts)} measured ${inSeconds(age)} ago`
 }
