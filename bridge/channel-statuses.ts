@@ -9,6 +9,7 @@ import {
   outputs as outputNames,
 } from '#app/safety/types.ts'
 import type { OutputView } from '#app/safety/view.ts'
+import { differenceInWords } from './channel-words.ts'
 
 const outputOf: Record<Channel, Output | null> = {
   heaterVolts: 'heater',
@@ -56,12 +57,15 @@ export class ChannelStatuses {
     this.#watches = Object.fromEntries(
       channels.map((channel) => [
         channel,
-        new ChannelWatch({
-          windowSeconds: config.window.seconds,
-          holdSeconds: config.window.holdSeconds,
-          toleranceDeviation: this.#tolerances[channel].settled,
-          toleranceDrift: this.#tolerances[channel].settled,
-        }),
+        new ChannelWatch(
+          {
+            windowSeconds: config.window.seconds,
+            holdSeconds: config.window.holdSeconds,
+            toleranceDeviation: this.#tolerances[channel].settled,
+            toleranceDrift: this.#tolerances[channel].settled,
+          },
+          (difference) => differenceInWords(channel, difference),
+        ),
       ]),
     ) as Record<Channel, ChannelWatch>
   }

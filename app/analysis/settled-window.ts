@@ -31,6 +31,9 @@ export type ChannelTolerance = {
   toleranceDrift: number
 }
 
+/** A difference in the channel's unit, as the reasons state it. */
+export type InWords = (difference: number) => string
+
 /** Two-sided 5 %: a slope counts as a drift only where chance gives a steeper one more rarely. */
 const SIGNIFICANCE = 0.05
 /**
@@ -49,12 +52,13 @@ const LEAST_EFFECTIVE_SAMPLES = 5
  */
 export class ChannelWatch {
   readonly tolerance: Required<ChannelTolerance>
+  readonly #inWords: InWords
   #window: SlidingWindow
   #startedSeconds: number | null = null
   #insideSinceSeconds: number | null = null
 
   /** @throws RangeError naming the option */
-  constructor(tolerance: ChannelTolerance) {
+  constructor(tolerance: ChannelTolerance, inWords: InWords = short) {
     const complete = { windowSeconds: 5, sampleTimeoutSeconds: 1, ...tolerance }
     requirePositive('windowSeconds', complete.windowSeconds)
     requireNotNegative('holdSeconds', complete.holdSeconds)
@@ -62,6 +66,7 @@ export class ChannelWatch {
     requireNotNegative('toleranceDeviation', complete.toleranceDeviation)
     requireNotNegative('toleranceDrift', complete.toleranceDrift)
     this.tolerance = complete
+    this.#inWords = inWords
     this.#window = new SlidingWindow(complete.windowSeconds)
   }
 
@@ -113,6 +118,7 @@ export class ChannelWatch {
   #judge(nowSeconds: number): { state: ChannelState; reason: string } {
     const { windowSeconds, holdSeconds, sampleTimeoutSeconds, toleranceDeviation, toleranceDrift } =
       this.tolerance
+    const inWords = this.#inWords
     const last = this.#window.lastSeconds
     if (last === null) return { state: 'stale', reason: 'no sample yet' }
     if (nowSeconds - last > sampleTimeoutSeconds) {
@@ -120,32 +126,34 @@ export class ChannelWatch {
     }
     if (!this.#isFull()) {
       const seconds = last - (this.#startedSeconds ?? last)
-      return { state: 'settling', reason: `${short(seconds)} s of the ${short(windowSeconds)} s window` }
+      const [whole, needed] = [Math.floor(seconds), short(windowSeconds)]
+      return { state: 'settling', reason: `watched for ${whole} of ${needed} s` }
     }
     const deviation = this.#window.standardDeviation
     const drift = Math.abs(this.#window.trend.slope) * windowSeconds
     if (drift > toleranceDrift && this.#isSlopeSignificant()) {
-      const direction = this.#window.trend.slope > 0 ? 'rises' : 'falls'
+      const perMinute = this.#window.trend.slope * 60
       return {
         state: 'drifting',
-        reason: `${direction} by ${short(drift)} in ${short(windowSeconds)} s, ${short(toleranceDrift)} allowed`,
+        reason: `${perMinute > 0 ? 'rises' : 'falls'} ${inWords(Math.abs(perMinute))} per minute`,
       }
     }
     if (deviation > toleranceDeviation) {
       return {
         state: 'noisy',
-        reason: `standard deviation ${short(deviation)}, ${short(toleranceDeviation)} allowed`,
+        reason: `standard deviation ${inWords(deviation)}, ${inWords(toleranceDeviation)} allowed`,
       }
     }
     if (drift > toleranceDrift) {
-      return { state: 'settling', reason: `change of ${short(drift)} over the window may be chance` }
+      return { state: 'settling', reason: `${inWords(drift)} of change may be chance` }
     }
     const held = last - (this.#insideSinceSeconds ?? last)
     // The times are sums of steps that are not exact.
     if (held < holdSeconds * (1 - 1e-9)) {
-      return { state: 'settling', reason: `within tolerance for ${short(held)} of ${short(holdSeconds)} s` }
+      const [whole, needed] = [Math.floor(held), short(holdSeconds)]
+      return { state: 'settling', reason: `steady for ${whole} of ${needed} s` }
     }
-    return { state: 'settled', reason: `within tolerance for ${short(held)} s` }
+    return { state: 'settled', reason: `± ${inWords(deviation)} over ${short(windowSeconds)} s` }
   }
 
   #isFull(): boolean {
