@@ -127,7 +127,7 @@ export async function createBridge(options: BridgeOptions): Promise<Bridge> {
     ? startCameras({
         link: options.cameraLink,
         paths: () => cameraPaths(room.benches()),
-        isWanted: (benchId) => telemetry.watchers.isOpen(benchId),
+        everySeconds: (benchId) => telemetry.watchers.pictureSeconds(benchId),
         onPicture: (picture) => bus.publish(picture),
       })
     : () => undefined

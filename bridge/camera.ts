@@ -3,7 +3,7 @@ import { createInterface } from 'node:readline'
 import * as z from 'zod'
 import { type Picture, pictureSchema } from '#app/protocol/messages.ts'
 
-const picturesHertz = 5
+const lookSeconds = 0.1
 const silentSeconds = 2
 const retrySeconds = 1
 
@@ -18,7 +18,8 @@ type CameraOptions = {
   link: string
   /** Camera paths by bench, as configured. */
   paths: () => ReadonlyMap<string, string>
-  isWanted: (benchId: string) => boolean
+  /** How often a picture of a bench is wanted, null for not at all. */
+  everySeconds: (benchId: string) => number | null
   onPicture: (picture: Picture) => void
 }
 
@@ -29,15 +30,16 @@ export function startCameras(options: CameraOptions): () => void {
     for (const [benchId, path] of options.paths()) {
       const name = /^virtual:(.+)$/.exec(path)?.[1]
       const camera = cameras.get(benchId)
-      if (name !== undefined && options.isWanted(benchId)) {
-        if (camera) camera.ask()
+      const seconds = options.everySeconds(benchId)
+      if (name !== undefined && seconds !== null) {
+        if (camera) camera.ask(seconds)
         else cameras.set(benchId, new Camera(options.link, name, benchId, options.onPicture))
       } else if (camera) {
         camera.close()
         cameras.delete(benchId)
       }
     }
-  }, 1000 / picturesHertz)
+  }, lookSeconds * 1000)
   return () => {
     clearInterval(timer)
     for (const camera of cameras.values()) camera.close()
@@ -53,6 +55,7 @@ class Camera {
   #isOpen = false
   #askedAt: number | null = null
   #closedAt = Number.NEGATIVE_INFINITY
+  #picturedAt = Number.NEGATIVE_INFINITY
 
   constructor(link: string, name: string, benchId: string, onPicture: (picture: Picture) => void) {
     this.#link = link
@@ -61,15 +64,16 @@ class Camera {
     this.#onPicture = onPicture
   }
 
-  /** Asks for the next picture, unless one is on its way. */
-  ask(): void {
+  /** Asks for the next picture if it is time for it, unless one is on its way. */
+  ask(everySeconds: number): void {
     const now = performance.now() / 1000
     if (!this.#socket) {
       if (now - this.#closedAt >= retrySeconds) this.#open()
     } else if (this.#askedAt !== null) {
       if (now - this.#askedAt > silentSeconds) this.#socket.destroy()
-    } else if (this.#isOpen) {
+    } else if (this.#isOpen && now - this.#picturedAt > everySeconds - lookSeconds / 2) {
       this.#askedAt = now
+      this.#picturedAt = now
       this.#socket.write('PICTURE\n')
     }
   }

@@ -64,7 +64,7 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
     perMessageDeflate: false,
     clientTracking: false,
   })
-  const watchers = new Watchers()
+  const watchers = new Watchers(clock)
   const unsubscribe = options.bus.subscribe((message) => watchers.publish(message))
 
   function upgrade(request: IncomingMessage, socket: Duplex, head: Buffer): void {
@@ -102,6 +102,7 @@ export function createTelemetry(options: TelemetryOptions): Telemetry {
       lastHeardAt: clock.now(),
       benchId: null,
       lostSamples: 0,
+      picturedAt: new Map(),
     }
     const allowance = new Allowance(messagesAtOnce, messagesPerSecond, clock)
     const benches = room.benches().filter(({ benchId }) => mayWatch(ticket, benchId))

@@ -3,6 +3,7 @@ import { WebSocket } from 'ws'
 import {
   type BridgeSite,
   openSocket,
+  type Page,
   people,
   quickBench,
   signedPost,
@@ -126,15 +127,22 @@ describe('The socket', () => {
     await page.close()
   })
 
-  it('shows the picture of a bench to whoever has its page open, and to nobody else', async () => {
-    const page = await connect({ ticket: ticket() })
+  it('shows the picture of a bench often on its own page, seldom in the hall, and not on the page of another', async () => {
+    const own = await connect({ ticket: ticket() })
+    const hall = await connect({ ticket: ticket() })
     const other = await connect({ ticket: ticket() })
-    page.send({ type: 'present', version: 1, benchId: 'bench-1', input: true })
-    await until('a picture', () =>
-      page.messages.find((said) => said.type === 'picture' && said.benchId === 'bench-1'),
-    )
-    expect(other.messages.some(({ type }) => type === 'picture')).toBe(false)
-    await page.close()
+    own.send({ type: 'present', version: 1, benchId: 'bench-1', input: true })
+    other.send({ type: 'present', version: 1, benchId: 'bench-2', input: true })
+    const pictures = (page: Page) =>
+      page.messages.filter((said) => said.type === 'picture' && said.benchId === 'bench-1').length
+    await until('pictures in the hall', () => pictures(hall) >= 3)
+    expect(pictures(own)).toBeGreaterThan(2 * pictures(hall))
+    expect(pictures(other)).toBe(0)
+
+    await own.close()
+    const from = pictures(hall)
+    await until('pictures with the hall alone', () => pictures(hall) >= from + 2)
+    await hall.close()
     await other.close()
   })
 
