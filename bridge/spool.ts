@@ -12,6 +12,8 @@ import type { BenchEvent } from '#app/protocol/messages.ts'
 import type { UnnumberedSummary } from './recorder.ts'
 
 const lockSeconds = 2
+/** About a day of three benches, and half a gigabyte. Events are few, and are never dropped. */
+const mostSummariesKept = 2_000_000
 const schema = [
   'PRAGMA journal_mode = WAL',
   // With a log ahead, what was written outlives a killed process; only a power cut may take the last of it.
@@ -38,8 +40,14 @@ export type Spool = {
   close(): Promise<void>
 }
 
-/** Opens or creates the spool. `url` is a libSQL URL, a file of this bridge alone. */
-export async function openSpool(url: string): Promise<Spool> {
+/**
+ * Opens or creates the spool. `url` is a libSQL URL, a file of this bridge alone. While the app stays away for long, the
+ * oldest summaries make room for the newest.
+ */
+export async function openSpool(
+  url: string,
+  { mostSummaries = mostSummariesKept }: { mostSummaries?: number } = {},
+): Promise<Spool> {
   const client: Client = createClient({ url, timeout: lockSeconds * 1000 })
   for (const statement of schema) await client.execute(statement)
   let last: Promise<unknown> = Promise.resolve()
@@ -81,7 +89,7 @@ export async function openSpool(url: string): Promise<Spool> {
     const result = await client.execute(`SELECT min(sequence) AS oldest FROM ${table}`)
     return Number(result.rows[0]?.oldest ?? (await highestGiven(table)) + 1)
   }
-  const dropConfirmed = (table: 'events' | 'summaries', upTo: number) =>
+  const dropUpTo = (table: 'events' | 'summaries', upTo: number) =>
     client.execute({ sql: `DELETE FROM ${table} WHERE sequence <= ?`, args: [upTo] })
   /** Numbers what is left anew, in its order, behind a number. */
   const renumber = async (table: 'events' | 'summaries', after: number) => {
@@ -108,7 +116,8 @@ export async function openSpool(url: string): Promise<Spool> {
       }),
     addSummaries: (summaries) =>
       inTurn(async () => {
-        await add('summaries', summaries)
+        const numbers = await add('summaries', summaries)
+        await dropUpTo('summaries', (numbers.at(-1) ?? 0) - mostSummaries)
       }),
     batch: (limits) =>
       inTurn(async () => ({
@@ -118,8 +127,8 @@ export async function openSpool(url: string): Promise<Spool> {
       })),
     settle: ({ confirmedEvent, confirmedSummary, continueAfter }) =>
       inTurn(async () => {
-        await dropConfirmed('events', confirmedEvent)
-        await dropConfirmed('summaries', confirmedSummary)
+        await dropUpTo('events', confirmedEvent)
+        await dropUpTo('summaries', confirmedSummary)
         if (continueAfter?.event !== undefined) await renumber('events', continueAfter.event)
         if (continueAfter?.summary !== undefined) await renumber('summaries', continueAfter.summary)
       }),
