@@ -52,7 +52,7 @@ test('With the web application killed, trips and make safe still work, also from
   site,
   signInAs,
 }) => {
-  test.setTimeout(240_000)
+  test.setTimeout(420_000)
   const benchId = 'bench-1'
   const page = await signInAs('technician')
   await acknowledgeCautions(page, benchId)
