@@ -1,9 +1,11 @@
+import { effectiveDegreesOfFreedom } from '#app/metrology/coverage.ts'
 import {
   standardUncertaintyFromAccuracy,
   standardUncertaintyFromHalfWidth,
   standardUncertaintyFromResolution,
 } from '#app/metrology/instrument-accuracy.ts'
 import type { CoilPair } from '#app/physics/coil-field.ts'
+import type { EdgeMean } from './edge-mean.ts'
 import type { EdgeSpread } from './edge-spread.ts'
 import type { EvennessTable, Gun } from './evenness-table.ts'
 
@@ -41,6 +43,16 @@ export type ReadingBench = {
   readonly coilMeter: { percentOfReading: number; digits: number; digitSizeAmps: number }
 }
 
+/** A diameter off a photo, as it stands on the scale: parallax is not yet taken out. */
+export type PhotoDiameter = {
+  diameterMetres: number
+  uCircleMetres: number
+  circleDegreesOfFreedom: number
+  /** with the product of both relative uncertainties */
+  uScaleMetres: number
+  scaleDegreesOfFreedom: number
+}
+
 export type Reading = {
   voltageVolts: number
   /** standard error of the window's mean (type A), with its degrees of freedom if known */
@@ -53,11 +65,13 @@ export type Reading = {
   /** one entry a person or repeat, the same of both in the same place */
   leftEdges: readonly number[]
   rightEdges: readonly number[]
+  /** of those who measured off a photo and count with it instead of with edges */
+  photos?: readonly PhotoDiameter[]
   /** pooled over the run; left out, it is that of these edges alone */
   edgeSpread?: EdgeSpread | null
 }
 
-export const budgetGroups = ['anode voltage', 'coil current', 'edges', 'coil pair', 'beam'] as const
+export const budgetGroups = ['anode voltage', 'coil current', 'edges', 'photo', 'coil pair', 'beam'] as const
 export type BudgetGroup = (typeof budgetGroups)[number]
 
 /** One line of the budget; `degreesOfFreedom` Infinity for type B. */
@@ -118,19 +132,24 @@ export function currentRows(bench: ReadingBench, reading: Reading, sensitivity: 
 /**
  * `perEdge` is ∂(e/m)/∂ of the right edge as read, the left edge's with the sign turned, and so ∂(e/m)/∂ of the distance.
  *
- * @param distance between the edges as read, the mean of `count` people
+ * @param distance between the edges as read or measured, the mean of `count` people, of whom `photos` are some
  */
 export function edgeRows(
   scale: ReadingBench['scale'],
-  { distance, count, spread }: { distance: number; count: number; spread: EdgeSpread | null },
+  { distance, count, spread, photos }: EdgeMean,
   perEdge: number,
 ): Row[] {
-  const group = 'edges'
-  const resolution = standardUncertaintyFromResolution(scale.graduationMetres * scale.readableFraction)
-  const rows = [
-    typeA(group, 'leftEdgeResolution', -perEdge, resolution),
-    typeA(group, 'rightEdgeResolution', perEdge, resolution),
-  ]
+  const readers = count - photos.length
+  const group = readers > 0 ? 'edges' : 'photo'
+  const rows = photoRows(photos, perEdge / count)
+  if (readers > 0) {
+    const perRead = (perEdge * readers) / count
+    const resolution = standardUncertaintyFromResolution(scale.graduationMetres * scale.readableFraction)
+    rows.push(
+      typeA(group, 'leftEdgeResolution', -perRead, resolution),
+      typeA(group, 'rightEdgeResolution', perRead, resolution),
+    )
+  }
   if (spread) {
     const standardError = spread.standardDeviationMetres / Math.sqrt(count)
     rows.push(typeA(group, 'edgeSpread', perEdge, standardError, spread.degreesOfFreedom))
@@ -142,6 +161,32 @@ export function edgeRows(
     rows.push(common(group, 'scaleDistance', perDistance, scale.uDistanceBehindMetres))
   }
   return rows
+}
+
+/** Circle and scale of the photos, each the mean's: whoever measures a photo sets marks of their own. */
+function photoRows(photos: readonly PhotoDiameter[], perDiameter: number): Row[] {
+  const count = photos.length
+  if (count === 0) return []
+  const row = (name: string, uncertainties: number[], degreesOfFreedom: number[]) =>
+    typeA(
+      'photo',
+      name,
+      perDiameter * count,
+      Math.hypot(...uncertainties) / count,
+      effectiveDegreesOfFreedom(uncertainties, degreesOfFreedom),
+    )
+  return [
+    row(
+      'photoCircle',
+      photos.map((photo) => photo.uCircleMetres),
+      photos.map((photo) => photo.circleDegreesOfFreedom),
+    ),
+    row(
+      'photoScale',
+      photos.map((photo) => photo.uScaleMetres),
+      photos.map((photo) => photo.scaleDegreesOfFreedom),
+    ),
+  ]
 }
 
 /** `perFactor` is ∂(e/m)/∂(k·g): k and g enter only as their product. */

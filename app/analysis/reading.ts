@@ -8,15 +8,22 @@ import {
   requireNotNegative,
   requirePositive,
 } from '#app/statistics/domain.ts'
-import { pooledEdgeSpread } from './edge-spread.ts'
+import { edgesOf } from './edge-mean.ts'
 import type { EvennessTable } from './evenness-table.ts'
 import { tabulateEvenness } from './evenness-table.ts'
+import { parallaxFactor } from './parallax.ts'
 import type { BudgetGroup, Reading, ReadingBench, Row } from './reading-rows.ts'
 import { beamRow, budgetGroups, currentRows, edgeRows, pairRows, voltageRows } from './reading-rows.ts'
 
 export { type EdgeSpread, pooledEdgeSpread } from './edge-spread.ts'
 export { type EvennessTable, tabulateEvenness } from './evenness-table.ts'
-export { type BudgetGroup, budgetGroups, type Reading, type ReadingBench } from './reading-rows.ts'
+export {
+  type BudgetGroup,
+  budgetGroups,
+  type PhotoDiameter,
+  type Reading,
+  type ReadingBench,
+} from './reading-rows.ts'
 
 export type ReadingResult = {
   /** e/m in C/kg */
@@ -47,8 +54,9 @@ const tables = new WeakMap<ReadingBench, Map<1 | -1, EvennessTable>>()
  *
  * The resolution of each edge and of each meter stands in the budget always, and beside it the spread over
  * people: pooled over the run where `edgeSpread` says so, else of these edges with n − 1 degrees of freedom.
- * Where nobody else has read an edge, nothing is known of the spread and the budget is without it. Accuracy of the meters, geometry, parallax and
- * beam are common to all readings of the bench.
+ * Where nobody else has read an edge, nothing is known of the spread and the budget is without it. Who measured off a
+ * photo counts as one more reader, with the uncertainties of circle and scale in place of the edges' resolution.
+ * Accuracy of the meters, geometry, parallax and beam are common to all readings of the bench.
  *
  * @param reading.bench is taken not to change: what is tabulated for it is kept with the object
  * @param reading.evenness what `tabulateEvenness` gave for this bench and sense of the current
@@ -165,38 +173,6 @@ function requireCurrent(name: string, amps: number): void {
   if (amps === 0) throw new RangeError(`${name} must not be 0: without a field there is no orbit`)
 }
 
-/** Distance between the edges as read: its mean over people, of how many, and its spread. */
-function edgesOf({ leftEdges, rightEdges, edgeSpread }: Reading) {
-  const count = leftEdges.length
-  if (count === 0) throw new RangeError('leftEdges must not be empty')
-  if (rightEdges.length !== count)
-    throw new RangeError(`rightEdges must be as many as leftEdges (${count}), got ${rightEdges.length}`)
-  const pairs = leftEdges.map((leftMetres, i) => {
-    requireFinite(`leftEdges[${i}]`, leftMetres)
-    const rightMetres = rightEdges[i] as number
-    requireFinite(`rightEdges[${i}]`, rightMetres)
-    return { leftMetres, rightMetres }
-  })
-  if (edgeSpread) {
-    requireNotNegative('edgeSpread.standardDeviationMetres', edgeSpread.standardDeviationMetres)
-    requireDegreesOfFreedom('edgeSpread.degreesOfFreedom', edgeSpread.degreesOfFreedom)
-  }
-  const sum = pairs.reduce((total, { leftMetres, rightMetres }) => total + (rightMetres - leftMetres), 0)
-  return { distance: sum / count, count, spread: edgeSpread ?? pooledEdgeSpread([pairs]) }
-}
-
-/** A scale behind the beam is seen larger than the beam; a mirrored scale takes the parallax out. */
-function parallaxFactor({ kind, distanceBehindMetres, eyeDistanceMetres }: ReadingBench['scale']): number {
-  if (kind === 'mirror') return 1
-  requireNotNegative('scale.distanceBehindMetres', distanceBehindMetres)
-  if (!(eyeDistanceMetres > distanceBehindMetres && eyeDistanceMetres < Number.POSITIVE_INFINITY)) {
-    throw new RangeError(
-      `scale.eyeDistanceMetres must be finite and above scale.distanceBehindMetres, got ${eyeDistanceMetres}`,
-    )
-  }
-  return (eyeDistanceMetres - distanceBehindMetres) / eyeDistanceMetres
-}
-
 function tableOf(bench: ReadingBench, sense: 1 | -1): EvennessTable {
   const known = tables.get(bench) ?? new Map<1 | -1, EvennessTable>()
   tables.set(bench, known)
@@ -212,7 +188,9 @@ function summarise(value: number, rows: readonly Row[]) {
     rows.map((row) => row.degreesOfFreedom),
   )
   const variance = expanded.standardUncertainty ** 2
-  const groups = budgetGroups.map((name) => ({ name, share: 0 }))
+  const groups = budgetGroups
+    .filter((name) => rows.some(({ group }) => group === name))
+    .map((name) => ({ name, share: 0 }))
   const contributions: ReadingResult['contributions'] = {}
   let commonVariance = 0
   let independentVariance = 0

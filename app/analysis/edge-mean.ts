@@ -1,0 +1,57 @@
+import {
+  requireDegreesOfFreedom,
+  requireFinite,
+  requireNotNegative,
+  requirePositive,
+} from '#app/statistics/domain.ts'
+import { type EdgeSpread, pooledEdgeSpread } from './edge-spread.ts'
+import type { PhotoDiameter, Reading } from './reading-rows.ts'
+
+/** Distance between the edges on the scale: the mean of `count` people, of whom `photos` are some, and its spread. */
+export type EdgeMean = {
+  distance: number
+  count: number
+  spread: EdgeSpread | null
+  photos: readonly PhotoDiameter[]
+}
+
+/**
+ * The edges as read and the diameters measured off photos, as one mean. The spread is the run's where it is given, else
+ * that of these people alone.
+ *
+ * @throws RangeError naming the argument
+ */
+export function edgesOf({ leftEdges, rightEdges, photos = [], edgeSpread }: Reading): EdgeMean {
+  const count = leftEdges.length + photos.length
+  if (count === 0) throw new RangeError('leftEdges must not be empty where there are no photos')
+  if (rightEdges.length !== leftEdges.length)
+    throw new RangeError(
+      `rightEdges must be as many as leftEdges (${leftEdges.length}), got ${rightEdges.length}`,
+    )
+  const pairs = leftEdges.map((leftMetres, i) => {
+    requireFinite(`leftEdges[${i}]`, leftMetres)
+    const rightMetres = rightEdges[i] as number
+    requireFinite(`rightEdges[${i}]`, rightMetres)
+    return { leftMetres, rightMetres }
+  })
+  photos.forEach((photo, i) => {
+    requirePositive(`photos[${i}].diameterMetres`, photo.diameterMetres)
+    for (const name of ['uCircleMetres', 'uScaleMetres'] as const)
+      requireNotNegative(`photos[${i}].${name}`, photo[name])
+    for (const name of ['circleDegreesOfFreedom', 'scaleDegreesOfFreedom'] as const)
+      requireDegreesOfFreedom(`photos[${i}].${name}`, photo[name])
+  })
+  if (edgeSpread) {
+    requireNotNegative('edgeSpread.standardDeviationMetres', edgeSpread.standardDeviationMetres)
+    requireDegreesOfFreedom('edgeSpread.degreesOfFreedom', edgeSpread.degreesOfFreedom)
+  }
+  const sum =
+    pairs.reduce((total, { leftMetres, rightMetres }) => total + (rightMetres - leftMetres), 0) +
+    photos.reduce((total, { diameterMetres }) => total + diameterMetres, 0)
+  return {
+    distance: sum / count,
+    count,
+    spread: edgeSpread ?? pooledEdgeSpread([[...pairs, ...photos]]),
+    photos,
+  }
+}
