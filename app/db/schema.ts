@@ -255,6 +255,55 @@ export const edges = sqliteTable(
   (table) => [index('edges_reading').on(table.readingId)],
 )
 
+/** A photo of a reading's beam. The picture itself is a file, named by the row; it is never changed. */
+export const photos = sqliteTable(
+  'photos',
+  {
+    id: id(),
+    readingId: text()
+      .notNull()
+      .references(() => readings.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    uploadedAt: createdAt(),
+    /** SHA-256 of the stored bytes, hexadecimal. */
+    digest: text().notNull(),
+    width: integer().notNull(),
+    height: integer().notNull(),
+    bytes: integer().notNull(),
+  },
+  (table) => [index('photos_reading').on(table.readingId)],
+)
+
+/**
+ * What one person marked on a photo, and the diameter that follows, as it stands on the scale. A correction is a new row;
+ * the newest of a person counts, be it this or edges.
+ */
+export const photoMeasurements = sqliteTable(
+  'photo_measurements',
+  {
+    id: id(),
+    photoId: text()
+      .notNull()
+      .references(() => photos.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    /** In pixels of the stored picture, from its upper left corner. */
+    scaleMarks: text({ mode: 'json' }).$type<{ x: number; y: number; scaleMetres: number }[]>().notNull(),
+    points: text({ mode: 'json' }).$type<{ x: number; y: number }[]>().notNull(),
+    diameterMetres: real().notNull(),
+    uCircleMetres: real().notNull(),
+    /** Null where they are not limited. */
+    circleDegreesOfFreedom: real(),
+    uScaleMetres: real().notNull(),
+    scaleDegreesOfFreedom: real(),
+    measuredAt: createdAt(),
+  },
+  (table) => [index('photo_measurements_photo').on(table.photoId)],
+)
+
 /** A reading is struck with a reason, never deleted. */
 export const strikes = sqliteTable('strikes', {
   readingId: text()
