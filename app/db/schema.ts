@@ -315,3 +315,39 @@ export const strikes = sqliteTable('strikes', {
   reason: text().notNull(),
   struckAt: createdAt(),
 })
+
+/** A setting that a run is still to be read at: proposed by its analysis or by the planner, added by a person. */
+export const plannedSettings = sqliteTable(
+  'planned_settings',
+  {
+    id: id(),
+    runId: text()
+      .notNull()
+      .references(() => runs.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    anodeVolts: real().notNull(),
+    coilAmps: real().notNull(),
+    polarity: integer().notNull(),
+    addedAt: createdAt(),
+  },
+  (table) => [unique().on(table.runId, table.anodeVolts, table.coilAmps, table.polarity)],
+)
+
+/** Which of the fits a person states as the result of a run. The newest counts; without one it is the general model's. */
+export const statements = sqliteTable(
+  'statements',
+  {
+    id: id(),
+    runId: text()
+      .notNull()
+      .references(() => runs.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    fit: text().notNull(),
+    statedAt: createdAt(),
+  },
+  (table) => [index('statements_run').on(table.runId)],
+)
