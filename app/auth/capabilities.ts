@@ -15,6 +15,8 @@ const table = {
   'reset-every-trip': ['technician'],
   capture: ['technician', 'instructor', 'student'],
   'strike-any-reading': ['technician', 'instructor'],
+  'read-runs': ['technician', 'instructor'],
+  'see-accepted-value': ['technician', 'instructor'],
   commission: ['technician'],
   'see-all-events': ['technician'],
   accounts: ['technician'],

@@ -1,4 +1,10 @@
-import { type EdgeSpread, type ReadingBench, readingBudget } from '../analysis/reading.ts'
+import {
+  type EdgeSpread,
+  type Reading,
+  type ReadingBench,
+  type ReadingResult,
+  readingBudget,
+} from '../analysis/reading.ts'
 import { readingBench } from '../benches/reading-bench.ts'
 import type { readings } from '../db/schema.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
@@ -14,43 +20,48 @@ function benchOf(config: BenchConfig): ReadingBench {
   return bench
 }
 
+type Entries = { config: BenchConfig; edges: ReadingView['edges']; edgeSpread: EdgeSpread | null }
+
 /**
- * e/m of one reading with its budget, under the revision that it was taken with. Null without edges, and where voltage,
- * current and edges belong to no orbit of this bench.
+ * One reading as `readingBudget` takes it and what that gives, under the revision that it was taken with. Null without
+ * edges, and where voltage, current and edges belong to no orbit of this bench.
  */
-export function workOut(
-  reading: typeof readings.$inferSelect,
-  {
-    config,
-    edges,
-    edgeSpread,
-  }: { config: BenchConfig; edges: ReadingView['edges']; edgeSpread: EdgeSpread | null },
-): ReadingView['result'] {
+export function budgetOf(
+  stored: typeof readings.$inferSelect,
+  { config, edges, edgeSpread }: Entries,
+): { reading: Reading & { bench: ReadingBench }; result: ReadingResult } | null {
   if (edges.length === 0) return null
+  const reading = {
+    bench: benchOf(config),
+    voltageVolts: stored.anodeVolts,
+    uVoltageVolts: stored.uAnodeVolts,
+    voltageDegreesOfFreedom: Math.max(1, stored.anodeEffectiveCount - 1),
+    // Whether the meter stands before or behind the reversing relay, the polarity tells the sense.
+    currentAmps: Math.abs(stored.coilAmps) * (stored.polarity === -1 ? -1 : 1),
+    uCurrentAmps: stored.uCoilAmps,
+    currentDegreesOfFreedom: Math.max(1, stored.coilEffectiveCount - 1),
+    leftEdges: edges.map(({ leftMetres }) => leftMetres),
+    rightEdges: edges.map(({ rightMetres }) => rightMetres),
+    edgeSpread,
+  }
   try {
-    const budget = readingBudget({
-      bench: benchOf(config),
-      voltageVolts: reading.anodeVolts,
-      uVoltageVolts: reading.uAnodeVolts,
-      voltageDegreesOfFreedom: Math.max(1, reading.anodeEffectiveCount - 1),
-      // Whether the meter stands before or behind the reversing relay, the polarity tells the sense.
-      currentAmps: Math.abs(reading.coilAmps) * (reading.polarity === -1 ? -1 : 1),
-      uCurrentAmps: reading.uCoilAmps,
-      currentDegreesOfFreedom: Math.max(1, reading.coilEffectiveCount - 1),
-      leftEdges: edges.map(({ leftMetres }) => leftMetres),
-      rightEdges: edges.map(({ rightMetres }) => rightMetres),
-      edgeSpread,
-    })
-    return {
-      chargeToMass: budget.value,
-      standardUncertainty: budget.standardUncertainty,
-      expandedUncertainty: budget.expandedUncertainty,
-      coverageFactor: budget.coverageFactor,
-      diameterMetres: budget.diameterMetres,
-      groups: budget.groups,
-    }
+    return { reading, result: readingBudget(reading) }
   } catch (error) {
     if (error instanceof RangeError) return null
     throw error
+  }
+}
+
+/** e/m of one reading as its logbook shows it, or null. */
+export function workOut(stored: typeof readings.$inferSelect, entries: Entries): ReadingView['result'] {
+  const budget = budgetOf(stored, entries)?.result
+  if (!budget) return null
+  return {
+    chargeToMass: budget.value,
+    standardUncertainty: budget.standardUncertainty,
+    expandedUncertainty: budget.expandedUncertainty,
+    coverageFactor: budget.coverageFactor,
+    diameterMetres: budget.diameterMetres,
+    groups: budget.groups,
   }
 }

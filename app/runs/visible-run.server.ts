@@ -1,0 +1,57 @@
+import { and, eq, exists, or, type SQL, sql } from 'drizzle-orm'
+import { data } from 'react-router'
+import { may } from '../auth/capabilities.ts'
+import { visibleTo, type Watcher } from '../benches/visible-benches.server.ts'
+import type { Database, Transaction } from '../db/client.server.ts'
+import { benches, edges, people, readings, runs } from '../db/schema.ts'
+
+export type VisibleRun = {
+  id: string
+  startedAt: Date
+  personId: string
+  by: string
+  bench: { id: string; name: string; place: string }
+}
+
+/** The condition on `runs` that leaves the ones that a person may read: all for staff, else those that they took part in. */
+export function runsOf(db: Database | Transaction, person: Watcher): SQL | undefined {
+  if (may(person.role, 'read-runs')) return undefined
+  const one = { one: sql`1` }
+  return or(
+    eq(runs.personId, person.id),
+    exists(
+      db
+        .select(one)
+        .from(readings)
+        .where(and(eq(readings.runId, runs.id), eq(readings.personId, person.id))),
+    ),
+    exists(
+      db
+        .select(one)
+        .from(edges)
+        .innerJoin(readings, eq(readings.id, edges.readingId))
+        .where(and(eq(readings.runId, runs.id), eq(edges.personId, person.id))),
+    ),
+  )
+}
+
+/** A run that this person may read. Throws a 404 when there is none. */
+export async function requireVisibleRun(
+  db: Database | Transaction,
+  { runId, person }: { runId: string; person: Watcher },
+): Promise<VisibleRun> {
+  const [run] = await db
+    .select({
+      id: runs.id,
+      startedAt: runs.startedAt,
+      personId: runs.personId,
+      by: people.name,
+      bench: { id: benches.id, name: benches.name, place: benches.place },
+    })
+    .from(runs)
+    .innerJoin(people, eq(people.id, runs.personId))
+    .innerJoin(benches, eq(benches.id, runs.benchId))
+    .where(and(eq(runs.id, runId), visibleTo(db, person), runsOf(db, person)))
+  if (!run) throw data('There is no such run, or it is not one of yours.', { status: 404 })
+  return run
+}
