@@ -141,13 +141,13 @@ export function edgeRows(
 ): Row[] {
   const readers = count - photos.length
   const group = readers > 0 ? 'edges' : 'photo'
-  const rows = photoRows(photos, perEdge / count)
+  const rows = photoRows(photos, count, perEdge)
   if (readers > 0) {
-    const perRead = (perEdge * readers) / count
-    const resolution = standardUncertaintyFromResolution(scale.graduationMetres * scale.readableFraction)
+    const step = (scale.graduationMetres * scale.readableFraction * readers) / count
+    const resolution = standardUncertaintyFromResolution(step)
     rows.push(
-      typeA(group, 'leftEdgeResolution', -perRead, resolution),
-      typeA(group, 'rightEdgeResolution', perRead, resolution),
+      typeA(group, 'leftEdgeResolution', -perEdge, resolution),
+      typeA(group, 'rightEdgeResolution', perEdge, resolution),
     )
   }
   if (spread) {
@@ -163,15 +163,14 @@ export function edgeRows(
   return rows
 }
 
-/** Circle and scale of the photos, each the mean's: whoever measures a photo sets marks of their own. */
-function photoRows(photos: readonly PhotoDiameter[], perDiameter: number): Row[] {
-  const count = photos.length
-  if (count === 0) return []
+/** What circle and scale of the photos bring to the mean of `count` people: each photo's marks are set for themselves. */
+function photoRows(photos: readonly PhotoDiameter[], count: number, perEdge: number): Row[] {
+  if (photos.length === 0) return []
   const row = (name: string, uncertainties: number[], degreesOfFreedom: number[]) =>
     typeA(
       'photo',
       name,
-      perDiameter * count,
+      perEdge,
       Math.hypot(...uncertainties) / count,
       effectiveDegreesOfFreedom(uncertainties, degreesOfFreedom),
     )

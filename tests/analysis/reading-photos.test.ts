@@ -96,10 +96,14 @@ describe('a reading of which one person read the edges and another measured a ph
   })
 
   it('has each one’s own lines by its half of the mean', () => {
+    expectNear(inputOf(mixed, 'photoCircle'), 0.0003 / 2, { rel: 1e-12 })
+    expectNear(inputOf(mixed, 'photoScale'), 0.00008 / 2, { rel: 1e-12 })
+    // Half a millimetre division, of one reader of two.
+    expectNear(inputOf(mixed, 'leftEdgeResolution'), 0.0005 / Math.sqrt(12) / 2, { rel: 1e-12 })
+    expectNear(inputOf(mixed, 'rightEdgeResolution'), 0.0005 / Math.sqrt(12) / 2, { rel: 1e-12 })
     const perEdge = mixed.contributions.edgeSpread?.sensitivity ?? 0
-    expectNear(mixed.contributions.photoCircle?.sensitivity ?? 0, perEdge / 2, { rel: 1e-12 })
-    expectNear(mixed.contributions.leftEdgeResolution?.sensitivity ?? 0, -perEdge / 2, { rel: 1e-12 })
-    expectNear(mixed.contributions.rightEdgeResolution?.sensitivity ?? 0, perEdge / 2, { rel: 1e-12 })
+    for (const name of ['photoCircle', 'photoScale', 'rightEdgeResolution'])
+      expect(mixed.contributions[name]?.sensitivity).toBe(perEdge)
     expect(mixed.groups.map(({ name }) => name)).toEqual([
       'anode voltage',
       'coil current',
