@@ -20,17 +20,17 @@ function benchOf(config: BenchConfig): ReadingBench {
   return bench
 }
 
-type Entries = { config: BenchConfig; edges: ReadingView['edges']; edgeSpread: EdgeSpread | null }
+type Entries = Pick<ReadingView, 'edges' | 'photos'> & { config: BenchConfig; edgeSpread: EdgeSpread | null }
 
 /**
- * One reading as `readingBudget` takes it and what that gives, under the revision that it was taken with. Null without
- * edges, and where voltage, current and edges belong to no orbit of this bench.
+ * One reading as `readingBudget` takes it and what that gives, under the revision that it was taken with. Null where
+ * nobody has read the beam, and where voltage, current and diameter belong to no orbit of this bench.
  */
 export function budgetOf(
   stored: typeof readings.$inferSelect,
-  { config, edges, edgeSpread }: Entries,
+  { config, edges, photos, edgeSpread }: Entries,
 ): { reading: Reading & { bench: ReadingBench }; result: ReadingResult } | null {
-  if (edges.length === 0) return null
+  if (edges.length + photos.length === 0) return null
   const reading = {
     bench: benchOf(config),
     voltageVolts: stored.anodeVolts,
@@ -42,6 +42,7 @@ export function budgetOf(
     currentDegreesOfFreedom: Math.max(1, stored.coilEffectiveCount - 1),
     leftEdges: edges.map(({ leftMetres }) => leftMetres),
     rightEdges: edges.map(({ rightMetres }) => rightMetres),
+    photos,
     edgeSpread,
   }
   try {

@@ -1,13 +1,14 @@
-import { and, asc, eq, sql } from 'drizzle-orm'
+import { and, asc, eq } from 'drizzle-orm'
 import { pooledEdgeSpread } from '../analysis/edge-spread.ts'
 import type { Database } from '../db/client.server.ts'
-import { benchRevisions, edges, people, readings, strikes } from '../db/schema.ts'
+import { benchRevisions, people, readings, strikes } from '../db/schema.ts'
 import {
   standardUncertaintyFromAccuracy,
   standardUncertaintyFromResolution,
 } from '../metrology/instrument-accuracy.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
 import { workOut } from './reading-result.server.ts'
+import { findReads, noReads, type Reads } from './reads.server.ts'
 
 export type ReadingView = {
   id: string
@@ -23,9 +24,10 @@ export type ReadingView = {
   uCoilAmps: number
   anodeStandardErrorVolts: number
   coilStandardErrorAmps: number
-  /** The newest edges of each person, in the order in which they came. */
-  edges: { personId: string; name: string; leftMetres: number; rightMetres: number }[]
-  /** Null until someone has entered edges, and where the numbers give no orbit. */
+  /** The edges of those whose newest they are, in the order in which they came; the others measured off a photo last. */
+  edges: Reads['edges']
+  photos: Reads['photos']
+  /** Null until someone has entered edges or measured a photo, and where the numbers give no orbit. */
   result: {
     chargeToMass: number
     standardUncertainty: number
@@ -50,7 +52,7 @@ function combined(reading: number, standardError: number, accuracy: Accuracy): n
 
 /** The readings of a run by number, each worked out with the bench as it was when the reading was taken. */
 export async function listReadings(db: Database, { runId }: { runId: string }): Promise<ReadingView[]> {
-  const [rows, edgesOf, strikeOf] = await Promise.all([
+  const [rows, readsOf, strikeOf] = await Promise.all([
     db
       .select({ reading: readings, by: people.name, config: benchRevisions.config })
       .from(readings)
@@ -61,13 +63,18 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       )
       .where(eq(readings.runId, runId))
       .orderBy(asc(readings.number)),
-    findEdges(db, runId),
+    findReads(db, runId),
     findStrikes(db, runId),
   ])
   const standing = rows.filter(({ reading }) => !strikeOf.has(reading.id))
-  const edgeSpread = pooledEdgeSpread(standing.map(({ reading }) => edgesOf.get(reading.id) ?? []))
+  const edgeSpread = pooledEdgeSpread(
+    standing.map(({ reading }) => {
+      const { edges, photos } = readsOf.get(reading.id) ?? noReads
+      return [...edges, ...photos]
+    }),
+  )
   return rows.map(({ reading, by, config }) => {
-    const newest = edgesOf.get(reading.id) ?? []
+    const reads = readsOf.get(reading.id) ?? noReads
     const { anodeMeter, coilMeter } = config.instruments
     return {
       id: reading.id,
@@ -82,35 +89,11 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       uCoilAmps: combined(reading.coilAmps, reading.uCoilAmps, coilMeter.accuracy),
       anodeStandardErrorVolts: reading.uAnodeVolts,
       coilStandardErrorAmps: reading.uCoilAmps,
-      edges: newest,
-      result: workOut(reading, { config, edges: newest, edgeSpread }),
+      ...reads,
+      result: workOut(reading, { config, ...reads, edgeSpread }),
       struck: strikeOf.get(reading.id) ?? null,
     }
   })
-}
-
-/** The newest edges of each person, by reading, in the order in which they came. */
-async function findEdges(db: Database, runId: string): Promise<Map<string, ReadingView['edges']>> {
-  const rows = await db
-    .select({
-      readingId: edges.readingId,
-      personId: edges.personId,
-      name: people.name,
-      leftMetres: edges.leftMetres,
-      rightMetres: edges.rightMetres,
-    })
-    .from(edges)
-    .innerJoin(readings, eq(readings.id, edges.readingId))
-    .innerJoin(people, eq(people.id, edges.personId))
-    .where(eq(readings.runId, runId))
-    .orderBy(asc(edges.enteredAt), sql`${edges}.rowid`)
-  const byReading = new Map<string, Map<string, ReadingView['edges'][number]>>()
-  for (const { readingId, ...entry } of rows) {
-    const byPerson = byReading.get(readingId) ?? new Map()
-    byPerson.delete(entry.personId)
-    byReading.set(readingId, byPerson.set(entry.personId, entry))
-  }
-  return new Map([...byReading].map(([readingId, byPerson]) => [readingId, [...byPerson.values()]]))
 }
 
 async function findStrikes(

@@ -59,6 +59,7 @@ export function readingView(changes: Partial<ReadingView> = {}): ReadingView {
     anodeStandardErrorVolts: 0.01,
     coilStandardErrorAmps: 0.0001,
     edges: [],
+    photos: [],
     result: null,
     struck: null,
     ...changes,
