@@ -1,14 +1,12 @@
-import { and, asc, eq } from 'drizzle-orm'
-import { pooledEdgeSpread } from '../analysis/edge-spread.ts'
 import type { Database } from '../db/client.server.ts'
-import { benchRevisions, people, readings, strikes } from '../db/schema.ts'
 import {
   standardUncertaintyFromAccuracy,
   standardUncertaintyFromResolution,
 } from '../metrology/instrument-accuracy.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
 import { workOut } from './reading-result.server.ts'
-import { findReads, noReads, type Reads } from './reads.server.ts'
+import type { Reads } from './reads.server.ts'
+import { loadReadings } from './run-readings.server.ts'
 
 export type ReadingView = {
   id: string
@@ -52,30 +50,9 @@ function combined(reading: number, standardError: number, accuracy: Accuracy): n
 
 /** The readings of a run by number, each worked out with the bench as it was when the reading was taken. */
 export async function listReadings(db: Database, { runId }: { runId: string }): Promise<ReadingView[]> {
-  const [rows, readsOf, strikeOf] = await Promise.all([
-    db
-      .select({ reading: readings, by: people.name, config: benchRevisions.config })
-      .from(readings)
-      .innerJoin(people, eq(people.id, readings.personId))
-      .innerJoin(
-        benchRevisions,
-        and(eq(benchRevisions.benchId, readings.benchId), eq(benchRevisions.revision, readings.revision)),
-      )
-      .where(eq(readings.runId, runId))
-      .orderBy(asc(readings.number)),
-    findReads(db, runId),
-    findStrikes(db, runId),
-  ])
-  const standing = rows.filter(({ reading }) => !strikeOf.has(reading.id))
-  const edgeSpread = pooledEdgeSpread(
-    standing.map(({ reading }) => {
-      const { edges, photos } = readsOf.get(reading.id) ?? noReads
-      return [...edges, ...photos]
-    }),
-  )
-  return rows.map(({ reading, by, config }) => {
-    const reads = readsOf.get(reading.id) ?? noReads
-    const { anodeMeter, coilMeter } = config.instruments
+  const rows = await loadReadings(db, runId)
+  return rows.map(({ reading, by, struck, ...entries }) => {
+    const { anodeMeter, coilMeter } = entries.config.instruments
     return {
       id: reading.id,
       number: reading.number,
@@ -89,32 +66,10 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       uCoilAmps: combined(reading.coilAmps, reading.uCoilAmps, coilMeter.accuracy),
       anodeStandardErrorVolts: reading.uAnodeVolts,
       coilStandardErrorAmps: reading.uCoilAmps,
-      ...reads,
-      result: workOut(reading, { config, ...reads, edgeSpread }),
-      struck: strikeOf.get(reading.id) ?? null,
+      edges: entries.edges,
+      photos: entries.photos,
+      result: workOut(reading, entries),
+      struck,
     }
   })
-}
-
-async function findStrikes(
-  db: Database,
-  runId: string,
-): Promise<Map<string, NonNullable<ReadingView['struck']>>> {
-  const rows = await db
-    .select({
-      readingId: strikes.readingId,
-      reason: strikes.reason,
-      by: people.name,
-      struckAt: strikes.struckAt,
-    })
-    .from(strikes)
-    .innerJoin(readings, eq(readings.id, strikes.readingId))
-    .innerJoin(people, eq(people.id, strikes.personId))
-    .where(eq(readings.runId, runId))
-  return new Map(
-    rows.map(({ readingId, reason, by, struckAt }) => [
-      readingId,
-      { reason, by, at: struckAt.toISOString() },
-    ]),
-  )
 }
