@@ -35,7 +35,10 @@ export type ReadingResult = {
   /** part of the uncertainty that all readings of the bench share, and the rest */
   commonUncertainty: number
   independentUncertainty: number
-  contributions: Record<string, Contribution & { group: BudgetGroup; common: boolean }>
+  contributions: Record<
+    string,
+    Contribution & Pick<Row, 'group' | 'standardUncertainty' | 'degreesOfFreedom' | 'common'>
+  >
   groups: { name: BudgetGroup; share: number }[]
   diameterMetres: number
   /** factor that e/m worked out from the centre field was multiplied with: 1/g² */
@@ -194,11 +197,19 @@ function summarise(value: number, rows: readonly Row[]) {
   const contributions: ReadingResult['contributions'] = {}
   let commonVariance = 0
   let independentVariance = 0
-  rows.forEach(({ name, group, sensitivity, common }, i) => {
+  rows.forEach(({ name, group, sensitivity, standardUncertainty, degreesOfFreedom, common }, i) => {
     const contribution = parts[i] as number
     const square = contribution * contribution
     const share = variance > 0 ? square / variance : 0
-    contributions[name] = { sensitivity, contribution, share, group, common }
+    contributions[name] = {
+      standardUncertainty,
+      degreesOfFreedom,
+      sensitivity,
+      contribution,
+      share,
+      group,
+      common,
+    }
     for (const entry of groups) if (entry.name === group) entry.share += share
     if (common) commonVariance += square
     else independentVariance += square
