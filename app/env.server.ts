@@ -10,6 +10,8 @@ const environmentSchema = z
     /** A demo site: shows its accounts on the sign-in page and runs on the default secrets. */
     DEMO: z.stringbool().default(false),
     DATABASE_URL: z.string().default('file:.data/coilside.db'),
+    /** Where photos are kept. By default the folder `files` beside the database, or in `.data` where that is no file. */
+    FILES_DIR: z.string().min(1).optional(),
     SESSION_SECRET: z.string().min(16).default(defaultSessionSecret),
     BRIDGE_SECRET: z.string().min(16).default(defaultBridgeSecret),
     BRIDGE_URL: z.url().default('http://127.0.0.1:4310'),

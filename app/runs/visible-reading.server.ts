@@ -12,10 +12,18 @@ import type { BenchConfig } from '../protocol/bench-config.ts'
 export async function requireVisibleReading(
   db: Database | Transaction,
   { benchId, readingId, person }: { benchId: string; readingId: string; person: Watcher },
-): Promise<{ id: string; number: number; personId: string; config: BenchConfig; isStruck: boolean }> {
+): Promise<{
+  id: string
+  runId: string
+  number: number
+  personId: string
+  config: BenchConfig
+  isStruck: boolean
+}> {
   const [reading] = await db
     .select({
       id: readings.id,
+      runId: readings.runId,
       number: readings.number,
       personId: readings.personId,
       config: benchRevisions.config,
