@@ -4,6 +4,7 @@ import type { Site } from '#tests/support/site.ts'
 import {
   acknowledgeCautions,
   expectTerminal,
+  leave,
   set,
   takeControls,
   terminalVolts,
@@ -119,6 +120,16 @@ test('With the web application killed, trips and make safe still work, also from
     const numbers = await readingsStored(site, benchId)
     expect(numbers).toHaveLength(before.length + 3)
     expect(numbers).toEqual(numbers.map((_, index) => index + 1))
+  })
+
+  await test.step('and the bench can be used again', async () => {
+    const reset = page
+      .getByRole('region', { name: 'Trip' })
+      .getByRole('button', { name: 'Reset', exact: true })
+    await expect(reset).toHaveAttribute('aria-disabled', 'false', { timeout: 60_000 })
+    await reset.click()
+    await expect(page.getByRole('region', { name: 'Trip' })).toBeHidden()
+    await leave(page)
   })
 })
 
