@@ -8,6 +8,7 @@ import { securityHeaders } from './auth/security-headers.server.ts'
 import { getPerson } from './auth/sessions.server.ts'
 import { bridgeSocketUrl } from './auth/socket-url.server.ts'
 import { ErrorPage } from './components/error-page.tsx'
+import { frameRevalidation } from './components/frame-revalidation.ts'
 import { databaseContext } from './context.ts'
 import { siteDatabase } from './db/site.server.ts'
 
@@ -29,6 +30,8 @@ export async function loader({ request, context }: Route.LoaderArgs) {
     socketUrl: bridgeSocketUrl(request),
   }
 }
+
+export const shouldRevalidate = frameRevalidation
 
 export default function App({ loaderData }: Route.ComponentProps) {
   return (
