@@ -1,6 +1,9 @@
 import { requireDegreesOfFreedom, requireFinite, requireNotNegative } from '#app/statistics/domain.ts'
+import { type Correlation, correlatedPairs } from './correlations.ts'
 import { coverageFactor, effectiveDegreesOfFreedom } from './coverage.ts'
 import { derivative } from './sensitivity.ts'
+
+export type { Correlation } from './correlations.ts'
 
 export type Distribution = 'normal' | 'rectangular' | 'triangular' | 'uShaped' | 't'
 
@@ -15,8 +18,6 @@ export type BudgetInput = {
   distribution?: Distribution
   common?: boolean
 }
-
-export type Correlation = { a: string; b: string; r: number }
 
 export type Contribution = {
   /** ∂result/∂input */
@@ -46,7 +47,8 @@ export type UncertaintyBudget<Name extends string = string> = {
  * effective degrees of freedom by Welch and Satterthwaite and an expanded uncertainty for 95 % by
  * Student's t. The degrees of freedom are not rounded.
  *
- * @param model takes one value an input, by name, and returns the result
+ * @param model takes one value an input, by name, and returns the result; it is given the same object each time,
+ *   with other values, and must not keep it
  * @param inputs at least one
  * @param correlations coefficients between −1 and 1, each pair once; together they must be possible
  * @throws RangeError naming the argument: an input by its name, `model` where it has no finite value at
@@ -63,16 +65,20 @@ export function uncertaintyBudget<Name extends string>(problem: {
   for (const name of names) requireInput(name, inputs[name])
   const values = {} as Record<Name, number>
   for (const name of names) values[name] = inputs[name].value
-  const value = model({ ...values })
+  const value = model(values)
   if (!Number.isFinite(value)) throw new RangeError(`model must be finite at the inputs, gave ${value}`)
   const sensitivities = {} as Record<Name, number>
   for (const name of names) {
     const input = inputs[name]
-    const along = (x: number): number => model({ ...values, [name]: x })
+    const along = (x: number): number => {
+      values[name] = x
+      return model(values)
+    }
     const scale = Math.max(input.standardUncertainty, 1e-3 * Math.abs(input.value)) || 1e-3
     const slope = derivative(along, input.value, scale)
     if (slope === null) throw new RangeError(`${name} must have a value about which the model is defined`)
     sensitivities[name] = slope.value
+    values[name] = input.value
   }
   return combineBudget({ value, inputs, sensitivities, correlations })
 }
@@ -91,13 +97,21 @@ export function combineBudget<Name extends string>(problem: {
   const { value, inputs, sensitivities, correlations = [] } = problem
   requireFinite('value', value)
   const names = Object.keys(inputs) as Name[]
-  const signed = names.map((name) => {
+  const signed: number[] = []
+  const magnitudes: number[] = []
+  const parts: number[] = []
+  const freedom: number[] = []
+  for (const name of names) {
+    const { standardUncertainty, degreesOfFreedom = Number.POSITIVE_INFINITY } = inputs[name]
     requireFinite(`sensitivities.${name}`, sensitivities[name])
-    return sensitivities[name] * inputs[name].standardUncertainty
-  })
-  const freedom = names.map((name) => inputs[name].degreesOfFreedom ?? Number.POSITIVE_INFINITY)
-  const pairs = correlationPairs(names, correlations)
-  const parts = signed.map((part) => part * part)
+    const part = sensitivities[name] * standardUncertainty
+    signed.push(part)
+    magnitudes.push(Math.abs(part))
+    parts.push(part * part)
+    freedom.push(degreesOfFreedom)
+  }
+  const independentVariance = sum(parts)
+  const pairs = correlatedPairs(names, correlations)
   for (const { a, b, r } of pairs) {
     const covariance = r * (signed[a] as number) * (signed[b] as number)
     parts[a] = (parts[a] as number) + covariance
@@ -105,8 +119,6 @@ export function combineBudget<Name extends string>(problem: {
   }
   const variance = Math.max(0, sum(parts))
   const standardUncertainty = Math.sqrt(variance)
-  const magnitudes = signed.map(Math.abs)
-  const independentVariance = sum(magnitudes.map((part) => part * part))
   // With correlations the combined variance takes the place of Σu² in the formula's numerator.
   const nu = effectiveDegreesOfFreedom(magnitudes, freedom)
   const effective =
@@ -116,7 +128,8 @@ export function combineBudget<Name extends string>(problem: {
   const k = coverageFactor(effectiveNu)
   const contributions = {} as Record<Name, Contribution>
   let common = 0
-  names.forEach((name, i) => {
+  for (let i = 0; i < names.length; i++) {
+    const name = names[i] as Name
     const part = parts[i] as number
     contributions[name] = {
       sensitivity: sensitivities[name],
@@ -124,7 +137,7 @@ export function combineBudget<Name extends string>(problem: {
       share: variance > 0 ? part / variance : 0,
     }
     if (inputs[name].common) common += part
-  })
+  }
   return {
     value,
     standardUncertainty,
@@ -148,7 +161,8 @@ const distributions: readonly string[] = [
   't',
 ] satisfies Distribution[]
 
-function requireInput(name: string, input: BudgetInput): void {
+/** @throws RangeError naming the input and what of it is wrong */
+export function requireInput(name: string, input: BudgetInput): void {
   requireFinite(`${name}.value`, input.value)
   requireNotNegative(`${name}.standardUncertainty`, input.standardUncertainty)
   if (input.degreesOfFreedom !== undefined) {
@@ -159,52 +173,8 @@ function requireInput(name: string, input: BudgetInput): void {
   }
 }
 
-function correlationPairs(names: readonly string[], correlations: readonly Correlation[]) {
-  const seen = new Set<string>()
-  const pairs = correlations.map(({ a, b, r }) => {
-    const [i, j] = [names.indexOf(a), names.indexOf(b)]
-    if (i < 0 || j < 0) throw new RangeError(`correlations must name inputs, got ${a} and ${b}`)
-    if (i === j) throw new RangeError(`correlations must be between two inputs, got ${a} twice`)
-    if (!(Math.abs(r) <= 1)) throw new RangeError(`correlations must lie between -1 and 1, got ${r}`)
-    const key = `${Math.min(i, j)} ${Math.max(i, j)}`
-    if (seen.has(key)) throw new RangeError(`correlations must hold each pair once, got ${a} and ${b} again`)
-    seen.add(key)
-    return { a: i, b: j, r }
-  })
-  if (pairs.length > 1) requirePossible(names.length, pairs)
-  return pairs
-}
-
-/** Cholesky factorisation; coefficients that no joint distribution has leave a negative pivot. */
-function requirePossible(size: number, pairs: { a: number; b: number; r: number }[]): void {
-  const matrix = Array.from({ length: size }, (_, i) =>
-    Array.from({ length: size }, (_, j): number => (i === j ? 1 : 0)),
-  )
-  const at = (i: number, j: number): number => matrix[i]?.[j] ?? 0
-  const set = (i: number, j: number, value: number): void => {
-    const row = matrix[i]
-    if (row) row[j] = value
-  }
-  for (const { a, b, r } of pairs) {
-    set(a, b, r)
-    set(b, a, r)
-  }
-  for (let column = 0; column < size; column++) {
-    const pivot = at(column, column)
-    if (pivot < -1e-9) throw new RangeError('correlations must be possible together (positive semi-definite)')
-    for (let i = column + 1; i < size; i++) {
-      const below = at(i, column)
-      if (pivot <= 1e-12) {
-        if (Math.abs(below) > 1e-6) {
-          throw new RangeError('correlations must be possible together (positive semi-definite)')
-        }
-        continue
-      }
-      for (let j = column + 1; j < size; j++) set(i, j, at(i, j) - (below * at(column, j)) / pivot)
-    }
-  }
-}
-
 function sum(values: readonly number[]): number {
-  return values.reduce((total, value) => total + value, 0)
+  let total = 0
+  for (const value of values) total += value
+  return total
 }

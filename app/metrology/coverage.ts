@@ -22,18 +22,25 @@ export function effectiveDegreesOfFreedom(
       `degreesOfFreedom must be as many as contributions (${contributions.length}), got ${degreesOfFreedom.length}`,
     )
   }
-  const largest = Math.max(...contributions)
+  let largest = 0
+  for (let i = 0; i < contributions.length; i++) {
+    const contribution = contributions[i] as number
+    const nu = degreesOfFreedom[i] as number
+    if (!(contribution >= 0 && contribution < Number.POSITIVE_INFINITY && nu > 0)) {
+      requireNotNegative(`contributions[${i}]`, contribution)
+      requireDegreesOfFreedom(`degreesOfFreedom[${i}]`, nu)
+    }
+    if (contribution > largest) largest = contribution
+  }
+  if (largest === 0) return Number.POSITIVE_INFINITY
   let variance = 0
   let perFreedom = 0
-  contributions.forEach((contribution, i) => {
-    requireNotNegative(`contributions[${i}]`, contribution)
-    const nu = degreesOfFreedom[i] as number
-    requireDegreesOfFreedom(`degreesOfFreedom[${i}]`, nu)
+  for (let i = 0; i < contributions.length; i++) {
     // Scaled, so that fourth powers neither overflow nor vanish.
-    const square = largest > 0 ? (contribution / largest) ** 2 : 0
+    const square = ((contributions[i] as number) / largest) ** 2
     variance += square
-    perFreedom += (square * square) / nu
-  })
+    perFreedom += (square * square) / (degreesOfFreedom[i] as number)
+  }
   return perFreedom > 0 ? (variance * variance) / perFreedom : Number.POSITIVE_INFINITY
 }
 
