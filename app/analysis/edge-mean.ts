@@ -5,7 +5,7 @@ import {
   requirePositive,
 } from '#app/statistics/domain.ts'
 import { type EdgeSpread, pooledEdgeSpread } from './edge-spread.ts'
-import type { PhotoDiameter, Reading } from './reading-rows.ts'
+import type { GivenDiameter, PhotoDiameter, Reading } from './reading-types.ts'
 
 /** Distance between the edges on the scale: the mean of `count` people, of whom `photos` are some, and its spread. */
 export type EdgeMean = {
@@ -13,15 +13,25 @@ export type EdgeMean = {
   count: number
   spread: EdgeSpread | null
   photos: readonly PhotoDiameter[]
+  /** Where nobody read it. */
+  given: GivenDiameter | null
 }
 
 /**
  * The edges as read and the diameters measured off photos, as one mean. The spread is the run's where it is given, else
- * that of these people alone.
+ * that of these people alone. A diameter that is given stands by itself.
  *
  * @throws RangeError naming the argument
  */
-export function edgesOf({ leftEdges, rightEdges, photos = [], edgeSpread }: Reading): EdgeMean {
+export function edgesOf({ leftEdges, rightEdges, photos = [], given, edgeSpread }: Reading): EdgeMean {
+  if (given) {
+    if (leftEdges.length + rightEdges.length + photos.length > 0)
+      throw new RangeError('given must stand by itself, without leftEdges, rightEdges and photos')
+    requirePositive('given.diameterMetres', given.diameterMetres)
+    requireNotNegative('given.uDiameterMetres', given.uDiameterMetres)
+    if (given.source === 'rung') requireNotNegative('given.settingHalfWidthAmps', given.settingHalfWidthAmps)
+    return { distance: given.diameterMetres, count: 1, spread: null, photos, given }
+  }
   const count = leftEdges.length + photos.length
   if (count === 0) throw new RangeError('leftEdges must not be empty where there are no photos')
   if (rightEdges.length !== leftEdges.length)
@@ -53,5 +63,6 @@ export function edgesOf({ leftEdges, rightEdges, photos = [], edgeSpread }: Read
     count,
     spread: edgeSpread ?? pooledEdgeSpread([[...pairs, ...photos]]),
     photos,
+    given: null,
   }
 }

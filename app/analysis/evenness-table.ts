@@ -1,6 +1,6 @@
 import type { Coil, CoilPair } from '#app/physics/coil-field.ts'
 import { centreFieldTesla, fieldTesla, requireCoilPair } from '#app/physics/coil-field.ts'
-import { requireFinite } from '#app/statistics/domain.ts'
+import { requireFinite, requirePositive } from '#app/statistics/domain.ts'
 import { ChebyshevSeries } from './chebyshev.ts'
 
 /** The gun's opening in the mid-plane of the coil pair and the way it points; any length will do. */
@@ -22,7 +22,9 @@ export type EvennessTable = {
   gPerSeparationMetre: ChebyshevSeries
 }
 
-type TabulatedBench = { coilPair: CoilPair; gun: Gun }
+type TabulatedBench =
+  | { coilPair: CoilPair; gun: Gun }
+  | { coilPair: null; fieldFactor: { teslaPerAmp: number } }
 
 const PROFILE_TERMS = 32
 const RADIUS_TERMS = 28
@@ -30,6 +32,8 @@ const STEPS_PER_TURN = 192
 /** Part of the windings' inner radius up to which an orbit may reach. */
 const REACH = 0.85
 const GEOMETRY_STEP = 2e-4
+/** Up to which an orbit is taken to see the even field of a factor alone. */
+const EVEN_RADIUS_METRES = 10
 /** An edge this short of a full turn is the gun itself, where the beam ends. */
 const FULL_TURN_MARGIN = 0.005
 
@@ -38,12 +42,13 @@ const FULL_TURN_MARGIN = 0.005
  * x between the outermost points of the orbit that leaves the gun. The path is integrated over its
  * heading in the exact mid-plane field, so it holds off the axis and whichever way the gun points; the
  * shape of the path depends on p/eB alone, hence g on r alone. Some tens of milliseconds; do it once for a
- * bench.
+ * bench. Of a field of which only its factor is known the table is even: g = 1 for every orbit.
  *
  * @param sense of the coil current; the electrons circle the other way when it is reversed
  * @throws RangeError naming the argument, also for a gun that lies outside the coils
  */
 export function tabulateEvenness(bench: TabulatedBench, sense: 1 | -1 = 1): EvennessTable {
+  if (bench.coilPair === null) return evenField(bench.fieldFactor.teslaPerAmp)
   const { coilPair: pair, gun } = bench
   requireCoilPair(pair)
   requireFinite('gun.xMetres', gun.xMetres)
@@ -93,6 +98,19 @@ export function tabulateEvenness(bench: TabulatedBench, sense: 1 | -1 = 1): Even
     g: series(values),
     gPerRadiusMetre: series(perRadius),
     gPerSeparationMetre: series(perSeparation),
+  }
+}
+
+function evenField(teslaPerAmp: number): EvennessTable {
+  requirePositive('fieldFactor.teslaPerAmp', teslaPerAmp)
+  const constant = (value: number) => ChebyshevSeries.through(0, EVEN_RADIUS_METRES, [value])
+  return {
+    teslaPerAmp,
+    slopes: { perTurn: 0, perRadiusMetre: 0, perSeparationMetre: 0 },
+    largestRadiusMetres: EVEN_RADIUS_METRES,
+    g: constant(1),
+    gPerRadiusMetre: constant(0),
+    gPerSeparationMetre: constant(0),
   }
 }
 

@@ -4,74 +4,20 @@ import {
   standardUncertaintyFromHalfWidth,
   standardUncertaintyFromResolution,
 } from '#app/metrology/instrument-accuracy.ts'
-import type { CoilPair } from '#app/physics/coil-field.ts'
 import type { EdgeMean } from './edge-mean.ts'
-import type { EdgeSpread } from './edge-spread.ts'
-import type { EvennessTable, Gun } from './evenness-table.ts'
+import type { EvennessTable } from './evenness-table.ts'
+import type { BudgetBench, FieldFactor, GivenDiameter, PhotoDiameter, Reading } from './reading-types.ts'
 
-/** What of a commissioned bench a reading needs. x runs along the scale; both lie in the mid-plane. */
-export type ReadingBench = {
-  readonly coilPair: CoilPair
-  /** standard uncertainties, the same error in both coils */
-  readonly uTurns?: number
-  readonly uRadiusMetres?: number
-  readonly uSeparationMetres?: number
-  /** series: the measured current goes through each coil; parallel: half of it does */
-  readonly coilConnection: 'series' | 'parallel'
-  /** measured centre field an ampere through each coil; it takes the place of the geometry in the budget */
-  readonly fieldFactor?: { teslaPerAmp: number; standardUncertainty: number }
-  readonly gun: Gun
-  readonly scale: {
-    kind: 'mirror' | 'ruler-behind'
-    graduationMetres: number
-    /** part of a graduation that is read, 0.5 for half a division */
-    readableFraction: number
-    distanceBehindMetres: number
-    uDistanceBehindMetres: number
-    eyeDistanceMetres: number
-  }
-  /** half-width of the bounds on the radius within which the edge of the glow was taken */
-  readonly beam: { halfWidthMetres: number }
-  readonly anodeMeter: {
-    percentOfReading: number
-    digits: number
-    digitSizeVolts: number
-    /** added to the reading, from a verification */
-    correctionVolts?: number
-    uCorrectionVolts?: number
-  }
-  readonly coilMeter: { percentOfReading: number; digits: number; digitSizeAmps: number }
-}
-
-/** A diameter off a photo, as it stands on the scale: parallax is not yet taken out. */
-export type PhotoDiameter = {
-  diameterMetres: number
-  uCircleMetres: number
-  circleDegreesOfFreedom: number
-  /** with the product of both relative uncertainties */
-  uScaleMetres: number
-  scaleDegreesOfFreedom: number
-}
-
-export type Reading = {
-  voltageVolts: number
-  /** standard error of the window's mean (type A), with its degrees of freedom if known */
-  uVoltageVolts: number
-  voltageDegreesOfFreedom?: number
-  /** as measured, before it divides between coils in parallel; negative when the sense is reversed */
-  currentAmps: number
-  uCurrentAmps: number
-  currentDegreesOfFreedom?: number
-  /** one entry a person or repeat, the same of both in the same place */
-  leftEdges: readonly number[]
-  rightEdges: readonly number[]
-  /** of those who measured off a photo and count with it instead of with edges */
-  photos?: readonly PhotoDiameter[]
-  /** pooled over the run; left out, it is that of these edges alone */
-  edgeSpread?: EdgeSpread | null
-}
-
-export const budgetGroups = ['anode voltage', 'coil current', 'edges', 'photo', 'coil pair', 'beam'] as const
+export const budgetGroups = [
+  'anode voltage',
+  'coil current',
+  'edges',
+  'photo',
+  'rung',
+  'diameter',
+  'coil pair',
+  'beam',
+] as const
 export type BudgetGroup = (typeof budgetGroups)[number]
 
 /** One line of the budget; `degreesOfFreedom` Infinity for type B. */
@@ -105,28 +51,43 @@ function common(group: BudgetGroup, name: string, sensitivity: number, standardU
   }
 }
 
-export function voltageRows(bench: ReadingBench, reading: Reading, sensitivity: number): Row[] {
+export function voltageRows(bench: BudgetBench, reading: Reading, sensitivity: number): Row[] {
   const group = 'anode voltage'
   const { percentOfReading, digits, digitSizeVolts: digitSize, uCorrectionVolts = 0 } = bench.anodeMeter
   const accuracy = { reading: reading.voltageVolts, percentOfReading, digits, digitSize }
   const rows = [
     typeA(group, 'anodeVoltage', sensitivity, reading.uVoltageVolts, reading.voltageDegreesOfFreedom),
-    typeA(group, 'anodeResolution', sensitivity, standardUncertaintyFromResolution(digitSize)),
+    typeA(
+      group,
+      'anodeResolution',
+      sensitivity,
+      standardUncertaintyFromResolution(reading.voltageDigitVolts ?? digitSize),
+    ),
     common(group, 'anodeMeter', sensitivity, standardUncertaintyFromAccuracy(accuracy)),
   ]
   if (uCorrectionVolts > 0) rows.push(common(group, 'anodeCorrection', sensitivity, uCorrectionVolts))
   return rows
 }
 
-export function currentRows(bench: ReadingBench, reading: Reading, sensitivity: number): Row[] {
+export function currentRows(bench: BudgetBench, reading: Reading, sensitivity: number): Row[] {
   const group = 'coil current'
   const { percentOfReading, digits, digitSizeAmps: digitSize } = bench.coilMeter
   const accuracy = { reading: reading.currentAmps, percentOfReading, digits, digitSize }
-  return [
+  const rows = [
     typeA(group, 'coilCurrent', sensitivity, reading.uCurrentAmps, reading.currentDegreesOfFreedom),
-    typeA(group, 'coilResolution', sensitivity, standardUncertaintyFromResolution(digitSize)),
+    typeA(
+      group,
+      'coilResolution',
+      sensitivity,
+      standardUncertaintyFromResolution(reading.currentDigitAmps ?? digitSize),
+    ),
     common(group, 'coilMeter', sensitivity, standardUncertaintyFromAccuracy(accuracy)),
   ]
+  if (reading.given?.source === 'rung') {
+    const setting = standardUncertaintyFromHalfWidth(reading.given.settingHalfWidthAmps)
+    rows.push(typeA(group, 'rungSetting', sensitivity, setting))
+  }
+  return rows
 }
 
 /**
@@ -135,14 +96,15 @@ export function currentRows(bench: ReadingBench, reading: Reading, sensitivity: 
  * @param distance between the edges as read or measured, the mean of `count` people, of whom `photos` are some
  */
 export function edgeRows(
-  scale: ReadingBench['scale'],
-  { distance, count, spread, photos }: EdgeMean,
+  scale: BudgetBench['scale'],
+  { distance, count, spread, photos, given }: EdgeMean,
   perEdge: number,
 ): Row[] {
+  if (given) return givenRows(scale, given, perEdge)
   const readers = count - photos.length
   const group = readers > 0 ? 'edges' : 'photo'
   const rows = photoRows(photos, count, perEdge)
-  if (readers > 0) {
+  if (readers > 0 && scale.kind !== 'rungs') {
     const step = (scale.graduationMetres * scale.readableFraction * readers) / count
     const resolution = standardUncertaintyFromResolution(step)
     rows.push(
@@ -154,13 +116,28 @@ export function edgeRows(
     const standardError = spread.standardDeviationMetres / Math.sqrt(count)
     rows.push(typeA(group, 'edgeSpread', perEdge, standardError, spread.degreesOfFreedom))
   }
-  if (scale.kind === 'ruler-behind') {
-    // d = (right − left)(L − δ)/L, and perEdge already holds the factor (L − δ)/L.
-    const rest = scale.eyeDistanceMetres - scale.distanceBehindMetres
-    const perDistance = (-perEdge * distance) / rest
-    rows.push(common(group, 'scaleDistance', perDistance, scale.uDistanceBehindMetres))
-  }
-  return rows
+  return [...rows, ...parallaxRows(scale, group, distance, perEdge)]
+}
+
+function givenRows(scale: BudgetBench['scale'], given: GivenDiameter, perEdge: number): Row[] {
+  const { source, diameterMetres, uDiameterMetres } = given
+  if (source === 'rung') return [common('rung', 'rungDistance', perEdge, uDiameterMetres)]
+  return [
+    typeA('diameter', 'statedDiameter', perEdge, uDiameterMetres),
+    ...parallaxRows(scale, 'diameter', diameterMetres, perEdge),
+  ]
+}
+
+function parallaxRows(
+  scale: BudgetBench['scale'],
+  group: BudgetGroup,
+  distance: number,
+  perEdge: number,
+): Row[] {
+  if (scale.kind !== 'ruler-behind') return []
+  // d = (right − left)(L − δ)/L, and perEdge already holds the factor (L − δ)/L.
+  const perDistance = (-perEdge * distance) / (scale.eyeDistanceMetres - scale.distanceBehindMetres)
+  return [common(group, 'scaleDistance', perDistance, scale.uDistanceBehindMetres)]
 }
 
 /** What circle and scale of the photos bring to the mean of `count` people: each photo's marks are set for themselves. */
@@ -189,17 +166,13 @@ function photoRows(photos: readonly PhotoDiameter[], count: number, perEdge: num
 }
 
 /** `perFactor` is ∂(e/m)/∂(k·g): k and g enter only as their product. */
-export function pairRows(
-  bench: ReadingBench,
-  table: EvennessTable,
-  radius: number,
-  perFactor: number,
-): Row[] {
+export function pairRows(bench: BudgetBench, table: EvennessTable, radius: number, perFactor: number): Row[] {
   const group = 'coil pair'
   const g = table.g.value(radius)
-  if (bench.fieldFactor) {
-    return [common(group, 'fieldFactor', perFactor * g, bench.fieldFactor.standardUncertainty)]
-  }
+  const factorRow = ({ standardUncertainty }: FieldFactor) =>
+    common(group, 'fieldFactor', perFactor * g, standardUncertainty)
+  if (bench.coilPair === null) return [factorRow(bench.fieldFactor)]
+  if (bench.fieldFactor) return [factorRow(bench.fieldFactor)]
   const { slopes, teslaPerAmp: k } = table
   const perRadius = slopes.perRadiusMetre * g + k * table.gPerRadiusMetre.value(radius)
   const perSeparation = slopes.perSeparationMetre * g + k * table.gPerSeparationMetre.value(radius)
@@ -210,6 +183,6 @@ export function pairRows(
   ]
 }
 
-export function beamRow(bench: ReadingBench, perRadius: number): Row {
+export function beamRow(bench: BudgetBench, perRadius: number): Row {
   return common('beam', 'beamEdge', perRadius, standardUncertaintyFromHalfWidth(bench.beam.halfWidthMetres))
 }

@@ -12,18 +12,21 @@ import { edgesOf } from './edge-mean.ts'
 import type { EvennessTable } from './evenness-table.ts'
 import { tabulateEvenness } from './evenness-table.ts'
 import { parallaxFactor } from './parallax.ts'
-import type { BudgetGroup, Reading, ReadingBench, Row } from './reading-rows.ts'
+import type { BudgetGroup, Row } from './reading-rows.ts'
 import { beamRow, budgetGroups, currentRows, edgeRows, pairRows, voltageRows } from './reading-rows.ts'
+import type { BudgetBench, Reading } from './reading-types.ts'
 
 export { type EdgeSpread, pooledEdgeSpread } from './edge-spread.ts'
 export { type EvennessTable, tabulateEvenness } from './evenness-table.ts'
-export {
-  type BudgetGroup,
-  budgetGroups,
-  type PhotoDiameter,
-  type Reading,
-  type ReadingBench,
-} from './reading-rows.ts'
+export { type BudgetGroup, budgetGroups } from './reading-rows.ts'
+export type {
+  BudgetBench,
+  FieldFactor,
+  GivenDiameter,
+  PhotoDiameter,
+  Reading,
+  ReadingBench,
+} from './reading-types.ts'
 
 export type ReadingResult = {
   /** e/m in C/kg */
@@ -48,7 +51,7 @@ export type ReadingResult = {
   currentPerCoilAmps: number
 }
 
-const tables = new WeakMap<ReadingBench, Map<1 | -1, EvennessTable>>()
+const tables = new WeakMap<BudgetBench, Map<1 | -1, EvennessTable>>()
 
 /**
  * e/m of one reading with its uncertainty budget: 2V/(B²r² − V²/c²) with B = k·I·g(r). The sensitivities
@@ -59,6 +62,8 @@ const tables = new WeakMap<ReadingBench, Map<1 | -1, EvennessTable>>()
  * people: pooled over the run where `edgeSpread` says so, else of these edges with n − 1 degrees of freedom.
  * Where nobody else has read an edge, nothing is known of the spread and the budget is without it. Who measured off a
  * photo counts as one more reader, with the uncertainties of circle and scale in place of the edges' resolution.
+ * With rungs the diameter is known and the current is what is set: how far it can be moved stands in the budget as a
+ * line of the coil current.
  * Accuracy of the meters, geometry, parallax and beam are common to all readings of the bench.
  *
  * @param reading.bench is taken not to change: what is tabulated for it is kept with the object
@@ -66,11 +71,12 @@ const tables = new WeakMap<ReadingBench, Map<1 | -1, EvennessTable>>()
  * @throws RangeError naming the argument, also for edges that no orbit of the bench can have
  */
 export function readingBudget(
-  reading: Reading & { bench: ReadingBench; evenness?: EvennessTable },
+  reading: Reading & { bench: BudgetBench; evenness?: EvennessTable },
 ): ReadingResult {
   const { bench, voltageVolts, currentAmps } = reading
   requireReading(reading)
   requireBench(bench)
+  requireScale(bench.scale, reading)
   const edges = edgesOf(reading)
   const parallax = parallaxFactor(bench.scale)
   const diameterMetres = edges.distance * parallax
@@ -146,13 +152,18 @@ function requireReading(reading: Reading): void {
     const nu = reading[name]
     if (nu !== undefined) requireDegreesOfFreedom(name, nu)
   }
+  requireNotNegative('voltageDigitVolts', reading.voltageDigitVolts ?? 0)
+  requireNotNegative('currentDigitAmps', reading.currentDigitAmps ?? 0)
 }
 
 /** The coil pair and the gun are looked at when they are tabulated. */
-function requireBench({ scale, beam, anodeMeter, coilMeter, fieldFactor, ...bench }: ReadingBench): void {
-  requirePositive('scale.graduationMetres', scale.graduationMetres)
-  requirePositive('scale.readableFraction', scale.readableFraction)
-  requireNotNegative('scale.uDistanceBehindMetres', scale.uDistanceBehindMetres)
+function requireBench(bench: BudgetBench): void {
+  const { scale, beam, anodeMeter, coilMeter, fieldFactor } = bench
+  if (scale.kind !== 'rungs') {
+    requirePositive('scale.graduationMetres', scale.graduationMetres)
+    requirePositive('scale.readableFraction', scale.readableFraction)
+    requireNotNegative('scale.uDistanceBehindMetres', scale.uDistanceBehindMetres)
+  }
   requireNotNegative('beam.halfWidthMetres', beam.halfWidthMetres)
   requireNotNegative('anodeMeter.percentOfReading', anodeMeter.percentOfReading)
   requireNotNegative('anodeMeter.digits', anodeMeter.digits)
@@ -162,13 +173,22 @@ function requireBench({ scale, beam, anodeMeter, coilMeter, fieldFactor, ...benc
   requireNotNegative('coilMeter.percentOfReading', coilMeter.percentOfReading)
   requireNotNegative('coilMeter.digits', coilMeter.digits)
   requireNotNegative('coilMeter.digitSizeAmps', coilMeter.digitSizeAmps)
-  requireNotNegative('uTurns', bench.uTurns ?? 0)
-  requireNotNegative('uRadiusMetres', bench.uRadiusMetres ?? 0)
-  requireNotNegative('uSeparationMetres', bench.uSeparationMetres ?? 0)
+  if (bench.coilPair) {
+    requireNotNegative('uTurns', bench.uTurns ?? 0)
+    requireNotNegative('uRadiusMetres', bench.uRadiusMetres ?? 0)
+    requireNotNegative('uSeparationMetres', bench.uSeparationMetres ?? 0)
+  }
   if (fieldFactor) {
     requirePositive('fieldFactor.teslaPerAmp', fieldFactor.teslaPerAmp)
     requireNotNegative('fieldFactor.standardUncertainty', fieldFactor.standardUncertainty)
   }
+}
+
+function requireScale(scale: BudgetBench['scale'], { leftEdges, given }: Reading): void {
+  if (scale.kind === 'rungs' && leftEdges.length > 0)
+    throw new RangeError('leftEdges must be empty: the scale of this bench has rungs')
+  if (scale.kind !== 'rungs' && given?.source === 'rung')
+    throw new RangeError('given.source must be stated: the scale of this bench has no rungs')
 }
 
 function requireCurrent(name: string, amps: number): void {
@@ -176,7 +196,7 @@ function requireCurrent(name: string, amps: number): void {
   if (amps === 0) throw new RangeError(`${name} must not be 0: without a field there is no orbit`)
 }
 
-function tableOf(bench: ReadingBench, sense: 1 | -1): EvennessTable {
+function tableOf(bench: BudgetBench, sense: 1 | -1): EvennessTable {
   const known = tables.get(bench) ?? new Map<1 | -1, EvennessTable>()
   tables.set(bench, known)
   const table = known.get(sense) ?? tabulateEvenness(bench, sense)

@@ -1,5 +1,5 @@
 import { parallaxFactor } from './parallax.ts'
-import type { Reading, ReadingBench, ReadingResult } from './reading.ts'
+import type { BudgetBench, Reading, ReadingResult } from './reading.ts'
 
 /** One reading as a point of a series: uncertainties of its own alone, what all readings share is left out. */
 export type SeriesReading = {
@@ -24,7 +24,7 @@ export type CommonPart = { name: string; relative: number }
  * @param result what `readingBudget` gave for the reading
  */
 export function seriesReading(
-  reading: Reading & { bench: ReadingBench },
+  reading: Reading & { bench: BudgetBench },
   result: ReadingResult,
 ): SeriesReading {
   const own = (...groups: string[]) =>
@@ -41,7 +41,7 @@ export function seriesReading(
     diameterMetres: result.diameterMetres,
     uVoltage: own('anode voltage'),
     uCurrent: own('coil current'),
-    uDiameter: own('edges', 'photo') * parallaxFactor(reading.bench.scale),
+    uDiameter: own('edges', 'photo', 'diameter') * parallaxFactor(reading.bench.scale),
     polarity: reading.currentAmps < 0 ? -1 : 1,
   }
 }
