@@ -38,12 +38,19 @@ export function edgesOf({ leftEdges, rightEdges, photos = [], given, edgeSpread 
     throw new RangeError(
       `rightEdges must be as many as leftEdges (${leftEdges.length}), got ${rightEdges.length}`,
     )
-  const pairs = leftEdges.map((leftMetres, i) => {
-    requireFinite(`leftEdges[${i}]`, leftMetres)
+  const pairs: { leftMetres: number; rightMetres: number }[] = []
+  let sum = 0
+  for (let i = 0; i < leftEdges.length; i++) {
+    const leftMetres = leftEdges[i] as number
     const rightMetres = rightEdges[i] as number
-    requireFinite(`rightEdges[${i}]`, rightMetres)
-    return { leftMetres, rightMetres }
-  })
+    const distance = rightMetres - leftMetres
+    if (!Number.isFinite(distance)) {
+      requireFinite(`leftEdges[${i}]`, leftMetres)
+      requireFinite(`rightEdges[${i}]`, rightMetres)
+    }
+    pairs.push({ leftMetres, rightMetres })
+    sum += distance
+  }
   photos.forEach((photo, i) => {
     requirePositive(`photos[${i}].diameterMetres`, photo.diameterMetres)
     for (const name of ['uCircleMetres', 'uScaleMetres'] as const)
@@ -55,13 +62,11 @@ export function edgesOf({ leftEdges, rightEdges, photos = [], given, edgeSpread 
     requireNotNegative('edgeSpread.standardDeviationMetres', edgeSpread.standardDeviationMetres)
     requireDegreesOfFreedom('edgeSpread.degreesOfFreedom', edgeSpread.degreesOfFreedom)
   }
-  const sum =
-    pairs.reduce((total, { leftMetres, rightMetres }) => total + (rightMetres - leftMetres), 0) +
-    photos.reduce((total, { diameterMetres }) => total + diameterMetres, 0)
+  for (const { diameterMetres } of photos) sum += diameterMetres
   return {
     distance: sum / count,
     count,
-    spread: edgeSpread ?? pooledEdgeSpread([[...pairs, ...photos]]),
+    spread: edgeSpread ?? pooledEdgeSpread([photos.length > 0 ? [...pairs, ...photos] : pairs]),
     photos,
     given: null,
   }

@@ -1,5 +1,3 @@
-import { requireFinite } from '#app/statistics/domain.ts'
-
 /** What one person tells of the beam's width on the scale: its two edges, or a diameter measured off a photo. */
 type Read = { leftMetres: number; rightMetres: number } | { diameterMetres: number }
 
@@ -22,16 +20,17 @@ export function pooledEdgeSpread(readings: readonly (readonly Read[])[]): EdgeSp
   let squares = 0
   let degreesOfFreedom = 0
   readings.forEach((reads, i) => {
-    const distances = reads.map((read) =>
-      'diameterMetres' in read ? read.diameterMetres : read.rightMetres - read.leftMetres,
-    )
-    const mean = distances.reduce((sum, distance) => sum + distance, 0) / distances.length
-    for (const distance of distances) {
-      requireFinite(`readings[${i}]`, distance)
-      squares += (distance - mean) ** 2
-    }
-    degreesOfFreedom += Math.max(0, distances.length - 1)
+    let sum = 0
+    for (const read of reads) sum += distanceOf(read)
+    if (!Number.isFinite(sum)) throw new RangeError(`readings[${i}] must hold finite numbers only`)
+    const mean = sum / reads.length
+    for (const read of reads) squares += (distanceOf(read) - mean) ** 2
+    degreesOfFreedom += Math.max(0, reads.length - 1)
   })
   if (degreesOfFreedom === 0) return null
   return { standardDeviationMetres: Math.sqrt(squares / degreesOfFreedom), degreesOfFreedom }
+}
+
+function distanceOf(read: Read): number {
+  return 'diameterMetres' in read ? read.diameterMetres : read.rightMetres - read.leftMetres
 }

@@ -169,10 +169,10 @@ function photoRows(photos: readonly PhotoDiameter[], count: number, perEdge: num
 export function pairRows(bench: BudgetBench, table: EvennessTable, radius: number, perFactor: number): Row[] {
   const group = 'coil pair'
   const g = table.g.value(radius)
-  const factorRow = ({ standardUncertainty }: FieldFactor) =>
-    common(group, 'fieldFactor', perFactor * g, standardUncertainty)
-  if (bench.coilPair === null) return [factorRow(bench.fieldFactor)]
-  if (bench.fieldFactor) return [factorRow(bench.fieldFactor)]
+  if (bench.coilPair === null || bench.fieldFactor) {
+    const { standardUncertainty } = bench.fieldFactor as FieldFactor
+    return [common(group, 'fieldFactor', perFactor * g, standardUncertainty)]
+  }
   const { slopes, teslaPerAmp: k } = table
   const perRadius = slopes.perRadiusMetre * g + k * table.gPerRadiusMetre.value(radius)
   const perSeparation = slopes.perSeparationMetre * g + k * table.gPerSeparationMetre.value(radius)

@@ -26,6 +26,7 @@ export type {
   PhotoDiameter,
   Reading,
   ReadingBench,
+  Ruler,
 } from './reading-types.ts'
 
 export type ReadingResult = {
@@ -111,7 +112,7 @@ export function readingBudget(
     ...pairRows(bench, table, radius, perField * amps),
     beamRow(bench, perRadius),
   ]
-  return Object.assign(summarise(value, rows), {
+  return summarise(value, rows, {
     diameterMetres,
     evenness: 1 / g ** 2,
     fieldTesla,
@@ -148,10 +149,14 @@ function requireReading(reading: Reading): void {
   requireNotNegative('uVoltageVolts', reading.uVoltageVolts)
   requireCurrent('currentAmps', reading.currentAmps)
   requireNotNegative('uCurrentAmps', reading.uCurrentAmps)
-  for (const name of ['voltageDegreesOfFreedom', 'currentDegreesOfFreedom'] as const) {
-    const nu = reading[name]
-    if (nu !== undefined) requireDegreesOfFreedom(name, nu)
-  }
+  requireDegreesOfFreedom(
+    'voltageDegreesOfFreedom',
+    reading.voltageDegreesOfFreedom ?? Number.POSITIVE_INFINITY,
+  )
+  requireDegreesOfFreedom(
+    'currentDegreesOfFreedom',
+    reading.currentDegreesOfFreedom ?? Number.POSITIVE_INFINITY,
+  )
   requireNotNegative('voltageDigitVolts', reading.voltageDigitVolts ?? 0)
   requireNotNegative('currentDigitAmps', reading.currentDigitAmps ?? 0)
 }
@@ -204,20 +209,19 @@ function tableOf(bench: BudgetBench, sense: 1 | -1): EvennessTable {
   return table
 }
 
-function summarise(value: number, rows: readonly Row[]) {
+type Orbit = Pick<ReadingResult, 'diameterMetres' | 'evenness' | 'fieldTesla' | 'currentPerCoilAmps'>
+
+function summarise(value: number, rows: readonly Row[], orbit: Orbit): ReadingResult {
   const parts = rows.map((row) => Math.abs(row.sensitivity) * row.standardUncertainty)
-  const expanded = expandIndependent(
-    parts,
-    rows.map((row) => row.degreesOfFreedom),
-  )
+  const freedom = rows.map((row) => row.degreesOfFreedom)
+  const expanded = expandIndependent(parts, freedom)
   const variance = expanded.standardUncertainty ** 2
-  const groups = budgetGroups
-    .filter((name) => rows.some(({ group }) => group === name))
-    .map((name) => ({ name, share: 0 }))
+  const shares = new Map<BudgetGroup, number>()
   const contributions: ReadingResult['contributions'] = {}
   let commonVariance = 0
   let independentVariance = 0
-  rows.forEach(({ name, group, sensitivity, standardUncertainty, degreesOfFreedom, common }, i) => {
+  for (let i = 0; i < rows.length; i++) {
+    const { name, group, sensitivity, standardUncertainty, degreesOfFreedom, common } = rows[i] as Row
     const contribution = parts[i] as number
     const square = contribution * contribution
     const share = variance > 0 ? square / variance : 0
@@ -230,16 +234,25 @@ function summarise(value: number, rows: readonly Row[]) {
       group,
       common,
     }
-    for (const entry of groups) if (entry.name === group) entry.share += share
+    shares.set(group, (shares.get(group) ?? 0) + share)
     if (common) commonVariance += square
     else independentVariance += square
-  })
+  }
   return {
     value,
-    ...expanded,
+    standardUncertainty: expanded.standardUncertainty,
+    expandedUncertainty: expanded.expandedUncertainty,
+    coverageFactor: expanded.coverageFactor,
+    effectiveDegreesOfFreedom: expanded.effectiveDegreesOfFreedom,
     commonUncertainty: Math.sqrt(commonVariance),
     independentUncertainty: Math.sqrt(independentVariance),
     contributions,
-    groups,
+    groups: budgetGroups
+      .filter((name) => shares.has(name))
+      .map((name) => ({ name, share: shares.get(name) as number })),
+    diameterMetres: orbit.diameterMetres,
+    evenness: orbit.evenness,
+    fieldTesla: orbit.fieldTesla,
+    currentPerCoilAmps: orbit.currentPerCoilAmps,
   }
 }
