@@ -1,17 +1,6 @@
 import { parallaxFactor } from './parallax.ts'
 import type { BudgetBench, Reading, ReadingResult } from './reading.ts'
-
-/** One reading as a point of a series: uncertainties of its own alone, what all readings share is left out. */
-export type SeriesReading = {
-  voltageVolts: number
-  /** as measured, before it divides between coils in parallel; without a sign, which is in `polarity` */
-  currentAmps: number
-  diameterMetres: number
-  uVoltage: number
-  uCurrent: number
-  uDiameter: number
-  polarity: 1 | -1
-}
+import type { SeriesReading } from './series-model.ts'
 
 /** What the readings of a run share: a standard uncertainty of e/m relative to it. */
 export type CommonPart = { name: string; relative: number }
