@@ -18,6 +18,8 @@ export default [
       route('commands', 'routes/benches/commands.ts'),
       route('runs', 'routes/benches/runs.ts'),
       route('readings', 'routes/benches/readings.ts'),
+      route('checklist', 'routes/benches/checklist.ts'),
+      route('typed-readings', 'routes/benches/typed-readings.ts'),
       route('readings/:readingId/edges', 'routes/benches/edges.ts'),
       route('readings/:readingId/strike', 'routes/benches/strike.ts'),
     ]),

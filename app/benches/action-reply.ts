@@ -15,6 +15,10 @@ export const ownCodes = {
   notPermitted: 'not-permitted',
   bridgeSilent: 'bridge-silent',
   struck: 'struck',
+  noInstruments: 'no-instruments',
+  hasInstruments: 'has-instruments',
+  cautionsOpen: 'cautions-open',
+  checklistOpen: 'checklist-open',
 } as const
 
 export const done = (answer: string): ActionReply => ({ ok: true, answer })
@@ -29,6 +33,13 @@ export const refused = (...refusals: { code: string; sentence: string }[]): Acti
   ok: false,
   errors: {},
   refusals,
+})
+
+/** To whatever would need an instrument, on a bench without ports. */
+export const noInstruments = refused({
+  code: ownCodes.noInstruments,
+  sentence:
+    'This bench has no instruments that this software reaches: nothing can be commanded or measured from here. Switch it on and off at its supplies, and type what its meters show.',
 })
 
 /** A reply with the HTTP status that it goes out with. */

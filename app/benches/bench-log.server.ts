@@ -1,7 +1,7 @@
 import { type SQL, sql } from 'drizzle-orm'
 import { may } from '../auth/capabilities.ts'
 import type { Database } from '../db/client.server.ts'
-import { benchCommands, benchEvents, classMembers, people } from '../db/schema.ts'
+import { benchCommands, benchEvents, checklists, classMembers, people, runs } from '../db/schema.ts'
 import { commandWords } from './command-words.ts'
 import type { Watcher } from './visible-benches.server.ts'
 
@@ -54,6 +54,15 @@ const commands = (benchId: string, reader: Watcher) => sql`
   where (${benchCommands.benchId} = ${benchId} or ${benchCommands.benchId} is null)
     and ${isTheirsToRead(sql`${benchCommands.personId}`, reader)}`
 
+/** Of a bench without ports, which no bridge tells of. */
+const ticks = (benchId: string, reader: Watcher) => sql`
+  select ${checklists.id} as id, ${checklists.tickedAt} as at, 'asked' as source, 'checklist' as kind,
+    'The checklist of the chain was ticked.' as sentence, ${people.name} as personName, null as asked,
+    'accepted' as outcome, 0 as tie
+  from ${checklists} join ${runs} on ${runs.id} = ${checklists.runId}
+    join ${people} on ${people.id} = ${checklists.personId}
+  where ${runs.benchId} = ${benchId} and ${isTheirsToRead(sql`${checklists.personId}`, reader)}`
+
 /**
  * What happened on a bench and what was asked of it, newest first, as far as the reader may know it. A command stands
  * there twice: as it was asked here, and as the bridge told of it.
@@ -68,20 +77,20 @@ export async function findBenchLog(
   }: { benchId: string; reader: Watcher; limit: number; offset?: number },
 ): Promise<LogEntry[]> {
   const rows = await db.all<Row>(
-    sql`${events(benchId, reader)} union all ${commands(benchId, reader)}
+    sql`${events(benchId, reader)} union all ${commands(benchId, reader)} union all ${ticks(benchId, reader)}
       order by at desc, tie desc, id desc limit ${limit} offset ${offset}`,
   )
   return rows.map(toEntry)
 }
 
-/** The newest entries for the bench's own page: what the bridge told, and commands that nobody answered. */
+/** The newest entries for the bench's own page: what the bridge told, commands that nobody answered, and ticked checklists. */
 export async function findNewestEvents(
   db: Database,
   { benchId, reader, limit }: { benchId: string; reader: Watcher; limit: number },
 ): Promise<LogEntry[]> {
   const rows = await db.all<Row>(
     sql`${events(benchId, reader)} union all ${commands(benchId, reader)} and ${benchCommands.outcome} = 'unanswered'
-      order by at desc, tie desc, id desc limit ${limit}`,
+      union all ${ticks(benchId, reader)} order by at desc, tie desc, id desc limit ${limit}`,
   )
   return rows.map(toEntry)
 }

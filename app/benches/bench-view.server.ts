@@ -1,6 +1,7 @@
 import { may } from '../auth/capabilities.ts'
 import type { Database } from '../db/client.server.ts'
-import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { BenchConfig, TypedBench } from '../protocol/bench-config.ts'
+import { findTicked, type Ticked } from '../runs/checklist.server.ts'
 import { listReadings, type ReadingView } from '../runs/reading-view.server.ts'
 import { findOpenRun } from '../runs/runs.server.ts'
 import type { Role } from '../safety/types.ts'
@@ -10,8 +11,7 @@ import { listWatchers, requireVisibleBench, type Watcher } from './visible-bench
 
 export type { ReadingView }
 
-export type BenchView = {
-  bench: { id: string; name: string; place: string; config: BenchConfig }
+type Shared = {
   person: { id: string; name: string; role: Role }
   may: { takeControls: boolean; takeOver: boolean; makeSafe: boolean; reset: boolean }
   cautionsAcknowledged: boolean
@@ -21,6 +21,12 @@ export type BenchView = {
   readings: ReadingView[]
   log: { at: string; kind: string; sentence: string; personName: string | null }[]
 }
+type Named<Config> = { id: string; name: string; place: string; config: Config }
+
+export type BenchView = Shared & { bench: Named<BenchConfig> }
+
+/** Of a bench without ports, with who has ticked its checklist for this run. */
+export type TypedBenchView = Shared & { bench: Named<TypedBench>; ticked: Ticked[] }
 
 const logLength = 20
 
@@ -28,8 +34,8 @@ const logLength = 20
 export async function loadBenchView(
   db: Database,
   { benchId, person }: { benchId: string; person: Watcher & { name: string } },
-): Promise<BenchView> {
-  const bench = await requireVisibleBench(db, { benchId, person })
+): Promise<BenchView | TypedBenchView> {
+  const { config, ...named } = await requireVisibleBench(db, { benchId, person })
   const [watchers, run, log] = await Promise.all([
     listWatchers(db, benchId),
     findOpenRun(db, benchId),
@@ -40,8 +46,7 @@ export async function loadBenchView(
     findAcknowledged(db, { personIds }),
     run ? listReadings(db, { runId: run.id }) : [],
   ])
-  return {
-    bench,
+  const shared: Shared = {
     person: { id: person.id, name: person.name, role: person.role },
     may: {
       takeControls: may(person.role, 'take-controls'),
@@ -57,4 +62,7 @@ export async function loadBenchView(
     readings,
     log: log.map(({ at, kind, sentence, personName }) => ({ at, kind, sentence, personName })),
   }
+  if (config.instruments !== null) return { ...shared, bench: { ...named, config } }
+  const ticked = run ? await findTicked(db, { runId: run.id, revision: config.revision }) : []
+  return { ...shared, bench: { ...named, config }, ticked }
 }

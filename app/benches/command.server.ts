@@ -7,7 +7,7 @@ import { type Database, write } from '../db/client.server.ts'
 import { benchCommands, benches } from '../db/schema.ts'
 import type { Command } from '../protocol/commands.ts'
 import { hasAcknowledged } from './acknowledgements.server.ts'
-import { type Answered, done, fieldErrors, ownCodes, refused } from './action-reply.ts'
+import { type Answered, done, fieldErrors, noInstruments, ownCodes, refused } from './action-reply.ts'
 import { resolveActor } from './actor.server.ts'
 import { type CommandForm, commandFormSchema } from './forms.ts'
 import { listWatchers, requireVisibleBench } from './visible-benches.server.ts'
@@ -36,7 +36,8 @@ export async function commandBench(
   db: Database,
   { benchId, person, form }: { benchId: string; person: Asker; form: FormData },
 ): Promise<Answered> {
-  await requireVisibleBench(db, { benchId, person })
+  const { config } = await requireVisibleBench(db, { benchId, person })
+  if (config.instruments === null) return { status: 409, reply: noInstruments }
   const parsed = commandFormSchema.safeParse(Object.fromEntries(form))
   if (!parsed.success) return { status: 400, reply: fieldErrors(z.flattenError(parsed.error).fieldErrors) }
 

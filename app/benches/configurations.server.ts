@@ -3,7 +3,7 @@ import type { Database } from '../db/client.server.ts'
 import { benchRevisions } from '../db/schema.ts'
 import type { BenchConfig } from '../protocol/bench-config.ts'
 
-/** Every commissioned bench as the bridge has to know it: the newest revision of each. */
+/** Every commissioned bench with ports as the bridge has to know it: the newest revision of each. */
 export async function listConfigurations(db: Database): Promise<BenchConfig[]> {
   const rows = await db
     .select({ config: benchRevisions.config })
@@ -12,5 +12,5 @@ export async function listConfigurations(db: Database): Promise<BenchConfig[]> {
       sql`${benchRevisions.revision} = (select max(newest.revision) from bench_revisions newest where newest.bench_id = ${benchRevisions.benchId})`,
     )
     .orderBy(asc(benchRevisions.benchId))
-  return rows.map(({ config }) => config)
+  return rows.flatMap(({ config }) => (config.instruments === null ? [] : [config]))
 }

@@ -1,4 +1,5 @@
 import * as z from 'zod'
+import { lastDigitOf } from '../metrology/last-digit.ts'
 
 const wholeNumber = /^[+-]?(\d+([.,]\d*)?|[.,]\d+)(e[+-]?\d+)?$/i
 const leadingNumber = /^[+-]?(\d+([.,]\d*)?|[.,]\d+)/
@@ -25,3 +26,15 @@ export const numberField = (what: string, unit: string) =>
     const value = Number(text.replace(',', '.'))
     return Number.isFinite(value) ? value : fail(`“${shown}” is too large to be ${what}.`)
   })
+
+/** A number off a display, with the size of the last digit that was typed of it: what it shows, zeros at the end too. */
+export const writtenNumberField = (what: string, unit: string) => {
+  const field = numberField(what, unit)
+  return z.string({ error: `Type ${what} in ${unit}.` }).transform((typed, context) => {
+    const { data, error } = field.safeParse(typed)
+    if (data !== undefined) return { value: data, lastDigit: lastDigitOf(typed) }
+    for (const { message } of error?.issues ?? [])
+      context.issues.push({ code: 'custom', message, input: typed })
+    return z.NEVER
+  })
+}

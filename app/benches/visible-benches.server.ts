@@ -4,11 +4,11 @@ import { may } from '../auth/capabilities.ts'
 import type { Person } from '../context.ts'
 import type { Database, Transaction } from '../db/client.server.ts'
 import { benches, benchRevisions, classBenches, classMembers, people } from '../db/schema.ts'
-import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { CommissionedBench } from '../protocol/bench-config.ts'
 import type { Role } from '../safety/types.ts'
 
 export type Watcher = Pick<Person, 'id' | 'role'>
-type VisibleBench = { id: string; name: string; place: string; config: BenchConfig }
+export type VisibleBench = { id: string; name: string; place: string; config: CommissionedBench }
 
 /** The condition on `benches` that leaves the ones that a person may watch: all, or those of their classes, or none. */
 export function visibleTo(db: Database | Transaction, person: Watcher): SQL | undefined {
@@ -22,6 +22,17 @@ export function visibleTo(db: Database | Transaction, person: Watcher): SQL | un
       .where(and(eq(classBenches.benchId, benches.id), eq(classMembers.personId, person.id))),
   )
 }
+
+/** With ports: the bridge watches these alone. */
+export const hasPorts = ({ config }: Pick<VisibleBench, 'config'>): boolean => config.instruments !== null
+
+/** What the frame of a bench's pages needs of it. */
+export const toFramed = ({ id, name, place, config }: VisibleBench) => ({
+  id,
+  name,
+  place,
+  hasPorts: hasPorts({ config }),
+})
 
 const isNewest = sql`${benchRevisions.revision} = (select max(newest.revision) from bench_revisions newest where newest.bench_id = ${benches.id})`
 

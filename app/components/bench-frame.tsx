@@ -4,19 +4,21 @@ import { Telemetry, useBenchState, useMakeSafeReport } from '../telemetry/teleme
 import { DeadManWarning } from './bench/dead-man-warning.tsx'
 import { MakeSafeButton } from './make-safe-button.tsx'
 import { PageFrame } from './page-frame.tsx'
+import { UnwatchedFrame } from './unwatched-frame.tsx'
 
 type Props = {
-  bench: { id: string; name: string; place: string }
+  bench: { id: string; name: string; place: string; hasPorts: boolean }
   person: { id: string; role: string }
   children: React.ReactNode
 }
 
 /**
  * The frame of a page beside the bench's own. It keeps the link to the bridge open, so that whoever is at the controls
- * stays present while they read here, and has make safe in its header.
+ * stays present while they read here, and has make safe in its header. Of a bench without ports there is no such link.
  */
 export function BenchFrame(props: Props) {
   const socketUrl = useRouteLoaderData<typeof rootLoader>('root')?.socketUrl
+  if (!props.bench.hasPorts) return <UnwatchedFrame bench={props.bench}>{props.children}</UnwatchedFrame>
   if (!socketUrl) return null
   return (
     <Telemetry key={props.bench.id} socketUrl={socketUrl} benchId={props.bench.id}>

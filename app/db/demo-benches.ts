@@ -1,4 +1,4 @@
-import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { BenchConfig, TypedBench } from '../protocol/bench-config.ts'
 
 /**
  * The three virtual benches of the demo as their technician measured them. What the apparatus truly is (its stray field,
@@ -142,3 +142,53 @@ export const demoBenches: BenchConfig[] = [
     picturePath: 'virtual:bench-3/camera',
   },
 ]
+
+/** The demo's bench without ports: what a laboratory measures by hand. Nothing stands behind it but this. */
+export const demoTypedBench: TypedBench = {
+  benchId: 'bench-4',
+  name: 'Bench 4',
+  place: 'back wall',
+  revision: 1,
+  coilPair: {
+    coils: [
+      { turns: 140, radiusMetres: 0.16 },
+      { turns: 140, radiusMetres: 0.16 },
+    ],
+    separationMetres: 0.16,
+  },
+  coilUncertainty: { radiusMetres: 0.001, separationMetres: 0.001, turns: 0 },
+  coilConnection: 'series',
+  reversal: 'not',
+  tube: { bulbRadiusMetres: 0.08, edges: 'outer' },
+  gun: { xMetres: 0.042, yMetres: 0, direction: { x: 0, y: 1 } },
+  scale: {
+    kind: 'ruler-behind',
+    graduationMetres: 0.001,
+    readableFraction: 0.5,
+    zeroMetres: -0.07,
+    lengthMetres: 0.14,
+    distanceBehindMetres: 0.085,
+    uDistanceBehindMetres: 0.003,
+    eyeDistanceMetres: 0.6,
+  },
+  beam: { halfWidthMetres: 0.0004 },
+  limits: { anodeVolts: 280, coilAmps: 2 },
+  instruments: null,
+  meters: {
+    anode: { percentOfReading: 0.5, digits: 1, digitSize: 0.1 },
+    coils: { percentOfReading: 0.8, digits: 1, digitSize: 0.01 },
+  },
+  checklist: [
+    { contact: 'leads', statement: 'The leads are whole and plugged as the wiring plan shows.' },
+    { contact: 'enclosure', statement: 'The cover over the tube’s terminals is closed.' },
+    {
+      contact: 'e-stop',
+      statement: 'The emergency stop is out, within reach, and cut the supply when tried today.',
+    },
+    { contact: 'limit', statement: 'The anode supply’s own limit stands at 280 V or below.' },
+    { contact: 'warm-up', statement: 'The heater has had 6.0 to 6.6 V for two minutes.' },
+    { contact: 'coil temp', statement: 'The thermometer on the coils shows less than 60 °C.' },
+    { contact: 'person', statement: 'One person sets this bench, and nobody works alone.' },
+  ],
+  picturePath: null,
+}

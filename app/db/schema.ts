@@ -1,6 +1,6 @@
 import { sql } from 'drizzle-orm'
 import { blob, index, integer, primaryKey, real, sqliteTable, text, unique } from 'drizzle-orm/sqlite-core'
-import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { CommissionedBench, TypedBench } from '../protocol/bench-config.ts'
 import type { ChannelStatus } from '../protocol/messages.ts'
 
 const id = () =>
@@ -68,7 +68,7 @@ export const benchRevisions = sqliteTable(
       .notNull()
       .references(() => benches.id),
     revision: integer().notNull(),
-    config: text({ mode: 'json' }).$type<BenchConfig>().notNull(),
+    config: text({ mode: 'json' }).$type<CommissionedBench>().notNull(),
     personId: text().references(() => people.id),
     note: text().notNull().default(''),
     createdAt: createdAt(),
@@ -190,7 +190,10 @@ export const runs = sqliteTable(
   (table) => [index('runs_bench').on(table.benchId, table.startedAt)],
 )
 
-/** A captured window. Values as measured, in SI, never overwritten. */
+/**
+ * A voltage and a current with which the beam was read. Values as measured, in SI, never overwritten.
+ * `measured`: a window that the bridge captured, with its samples. `typed`: read off meters by a person.
+ */
 export const readings = sqliteTable(
   'readings',
   {
@@ -205,6 +208,9 @@ export const readings = sqliteTable(
       .notNull()
       .references(() => people.id),
     capturedAt: at().notNull(),
+    source: text({ enum: ['measured', 'typed'] })
+      .notNull()
+      .default('measured'),
     windowSeconds: real().notNull(),
     polarity: integer().notNull(),
     anodeVolts: real().notNull(),
@@ -213,9 +219,30 @@ export const readings = sqliteTable(
     coilAmps: real().notNull(),
     uCoilAmps: real().notNull(),
     coilEffectiveCount: real().notNull(),
+    /** Size of the last digit of a number that a person wrote; null where the meter itself tells it. */
+    anodeDigitVolts: real(),
+    coilDigitAmps: real(),
     states: text({ mode: 'json' }).$type<Partial<Record<string, ChannelStatus>>>().notNull(),
   },
   (table) => [unique().on(table.runId, table.number)],
+)
+
+/** The chain of a bench without ports as a person ticked it for a run: every contact in the words that it then had. */
+export const checklists = sqliteTable(
+  'checklists',
+  {
+    id: id(),
+    runId: text()
+      .notNull()
+      .references(() => runs.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    revision: integer().notNull(),
+    contacts: text({ mode: 'json' }).$type<TypedBench['checklist']>().notNull(),
+    tickedAt: createdAt(),
+  },
+  (table) => [index('checklists_run').on(table.runId)],
 )
 
 /** The raw samples of a reading: one row a channel, little-endian float64, NaN where there was no reading. */
@@ -253,6 +280,28 @@ export const edges = sqliteTable(
     enteredAt: createdAt(),
   },
   (table) => [index('edges_reading').on(table.readingId)],
+)
+
+/**
+ * The rung that the beam was made to meet, and how far the current could be moved before it no longer did. One beam meets
+ * one rung: the newest row of a reading counts, whoever wrote it.
+ */
+export const rungs = sqliteTable(
+  'rungs',
+  {
+    id: id(),
+    readingId: text()
+      .notNull()
+      .references(() => readings.id),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    /** Its name on the bench of the reading's revision. */
+    rung: text().notNull(),
+    settingHalfWidthAmps: real(),
+    enteredAt: createdAt(),
+  },
+  (table) => [index('rungs_reading').on(table.readingId)],
 )
 
 /** A photo of a reading's beam. The picture itself is a file, named by the row; it is never changed. */

@@ -2,11 +2,16 @@ import { pathToFileURL } from 'node:url'
 import { hashPassword } from '../auth/password.server.ts'
 import { type Database, write } from './client.server.ts'
 import { demoAccounts } from './demo-accounts.server.ts'
-import { demoBenches } from './demo-benches.ts'
+import { demoBenches, demoTypedBench } from './demo-benches.ts'
 import { benches, benchRevisions, classBenches, classes, classMembers, people } from './schema.ts'
 import { siteDatabase } from './site.server.ts'
 
-/** Fills an empty database with the demo site: its accounts, one class, three virtual benches. Leaves any other as it is. */
+const commissioned = [...demoBenches, demoTypedBench]
+
+/**
+ * Fills an empty database with the demo site: its accounts, one class, three virtual benches and one without ports. Leaves
+ * any other as it is.
+ */
 export async function seedDemo(db: Database): Promise<'seeded' | 'left as it was'> {
   if (await db.query.people.findFirst()) return 'left as it was'
   const accounts = await Promise.all(
@@ -22,9 +27,9 @@ export async function seedDemo(db: Database): Promise<'seeded' | 'left as it was
     const technician = persons.find((person) => person.role === 'technician')
     await tx
       .insert(benches)
-      .values(demoBenches.map(({ benchId, name, place }) => ({ id: benchId, name, place })))
+      .values(commissioned.map(({ benchId, name, place }) => ({ id: benchId, name, place })))
     await tx.insert(benchRevisions).values(
-      demoBenches.map((config) => ({
+      commissioned.map((config) => ({
         benchId: config.benchId,
         revision: config.revision,
         config,
@@ -41,7 +46,7 @@ export async function seedDemo(db: Database): Promise<'seeded' | 'left as it was
     await tx.insert(classMembers).values(members.map(({ id }) => ({ classId: practical.id, personId: id })))
     await tx
       .insert(classBenches)
-      .values(demoBenches.map(({ benchId }) => ({ classId: practical.id, benchId })))
+      .values(commissioned.map(({ benchId }) => ({ classId: practical.id, benchId })))
   })
   return 'seeded'
 }

@@ -1,5 +1,5 @@
 import { and, eq, max } from 'drizzle-orm'
-import { type Answered, done, ownCodes, refused } from '../benches/action-reply.ts'
+import { type Answered, done, noInstruments, ownCodes, refused } from '../benches/action-reply.ts'
 import { resolveActor } from '../benches/actor.server.ts'
 import { requireVisibleBench } from '../benches/visible-benches.server.ts'
 import { askCapture } from '../bridge-link/bridge-client.server.ts'
@@ -19,7 +19,8 @@ export async function captureReading(
   db: Database,
   { benchId, person }: { benchId: string; person: Pick<Person, 'id' | 'name' | 'role'> },
 ): Promise<Answered> {
-  await requireVisibleBench(db, { benchId, person })
+  const { config } = await requireVisibleBench(db, { benchId, person })
+  if (config.instruments === null) return { status: 409, reply: noInstruments }
   const answer = await askCapture(benchId, { actor: await resolveActor(db, person) })
   if (answer.kind !== 'answered')
     return {

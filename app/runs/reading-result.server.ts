@@ -1,26 +1,29 @@
 import {
+  type BudgetBench,
   type EdgeSpread,
+  type GivenDiameter,
   type Reading,
-  type ReadingBench,
   type ReadingResult,
   readingBudget,
 } from '../analysis/reading.ts'
 import { readingBench } from '../benches/reading-bench.ts'
+import { findRung } from '../benches/scale.ts'
 import type { readings } from '../db/schema.ts'
-import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { CommissionedBench } from '../protocol/bench-config.ts'
 import type { ReadingView } from './reading-view.server.ts'
+import type { Reads } from './reads.server.ts'
 
-const benches = new Map<string, ReadingBench>()
+const benches = new Map<string, BudgetBench>()
 
 /** One object a revision, so that its field is tabulated once in the life of the process. */
-function benchOf(config: BenchConfig): ReadingBench {
+function benchOf(config: CommissionedBench): BudgetBench {
   const key = JSON.stringify(config)
   const bench = benches.get(key) ?? readingBench(config)
   benches.set(key, bench)
   return bench
 }
 
-type Entries = Pick<ReadingView, 'edges' | 'photos'> & { config: BenchConfig; edgeSpread: EdgeSpread | null }
+type Entries = Reads & { config: CommissionedBench; edgeSpread: EdgeSpread | null }
 
 /**
  * One reading as `readingBudget` takes it and what that gives, under the revision that it was taken with. Null where
@@ -28,21 +31,27 @@ type Entries = Pick<ReadingView, 'edges' | 'photos'> & { config: BenchConfig; ed
  */
 export function budgetOf(
   stored: typeof readings.$inferSelect,
-  { config, edges, photos, edgeSpread }: Entries,
-): { reading: Reading & { bench: ReadingBench }; result: ReadingResult } | null {
-  if (edges.length + photos.length === 0) return null
+  entries: Entries,
+): { reading: Reading & { bench: BudgetBench }; result: ReadingResult } | null {
+  const { config, edges, photos, edgeSpread } = entries
+  const given = givenOf(entries)
+  if (edges.length + photos.length === 0 && !given) return null
+  const { anodeDigitVolts, coilDigitAmps } = stored
   const reading = {
     bench: benchOf(config),
     voltageVolts: stored.anodeVolts,
     uVoltageVolts: stored.uAnodeVolts,
     voltageDegreesOfFreedom: Math.max(1, stored.anodeEffectiveCount - 1),
+    ...(anodeDigitVolts !== null && { voltageDigitVolts: anodeDigitVolts }),
     // Whether the meter stands before or behind the reversing relay, the polarity tells the sense.
     currentAmps: Math.abs(stored.coilAmps) * (stored.polarity === -1 ? -1 : 1),
     uCurrentAmps: stored.uCoilAmps,
     currentDegreesOfFreedom: Math.max(1, stored.coilEffectiveCount - 1),
+    ...(coilDigitAmps !== null && { currentDigitAmps: coilDigitAmps }),
     leftEdges: edges.map(({ leftMetres }) => leftMetres),
     rightEdges: edges.map(({ rightMetres }) => rightMetres),
     photos,
+    given,
     edgeSpread,
   }
   try {
@@ -50,6 +59,17 @@ export function budgetOf(
   } catch (error) {
     if (error instanceof RangeError) return null
     throw error
+  }
+}
+
+function givenOf({ config, rung }: Entries): GivenDiameter | undefined {
+  const found = rung && findRung(config, rung.rung)
+  if (!found) return undefined
+  return {
+    source: 'rung',
+    diameterMetres: found.distanceMetres,
+    uDiameterMetres: found.uDistanceMetres,
+    settingHalfWidthAmps: rung.settingHalfWidthAmps ?? 0,
   }
 }
 

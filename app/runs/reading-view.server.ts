@@ -1,9 +1,10 @@
+import { accuracyOf } from '../benches/reading-bench.ts'
+import { findRung } from '../benches/scale.ts'
 import type { Database } from '../db/client.server.ts'
 import {
   standardUncertaintyFromAccuracy,
   standardUncertaintyFromResolution,
 } from '../metrology/instrument-accuracy.ts'
-import type { BenchConfig } from '../protocol/bench-config.ts'
 import { workOut } from './reading-result.server.ts'
 import type { Reads } from './reads.server.ts'
 import { loadReadings } from './run-readings.server.ts'
@@ -14,6 +15,8 @@ export type ReadingView = {
   capturedAt: string
   by: string
   revision: number
+  /** Measured by the bridge, or typed by a person who read the meters. */
+  source: 'measured' | 'typed'
   polarity: 1 | -1
   anodeVolts: number
   /** Standard uncertainty of this value: scatter, resolution and accuracy of the meter together. */
@@ -25,7 +28,9 @@ export type ReadingView = {
   /** The edges of those whose newest they are, in the order in which they came; the others measured off a photo last. */
   edges: Reads['edges']
   photos: Reads['photos']
-  /** Null until someone has entered edges or measured a photo, and where the numbers give no orbit. */
+  /** The rung that the beam met, on a bench that has them, and the diameter that it stands for. */
+  rung: (NonNullable<Reads['rung']> & { diameterMetres: number }) | null
+  /** Null until someone has entered edges or a rung or measured a photo, and where the numbers give no orbit. */
   result: {
     chargeToMass: number
     standardUncertainty: number
@@ -37,14 +42,15 @@ export type ReadingView = {
   struck: { reason: string; by: string; at: string } | null
 }
 
-type Accuracy = BenchConfig['instruments']['anodeMeter']['accuracy']
+type Accuracy = ReturnType<typeof accuracyOf>['anode']
+type Figure = { value: number; standardError: number; digit: number | null }
 
-/** Scatter of the window, the meter's accuracy and the size of its last digit, as one standard uncertainty. */
-function combined(reading: number, standardError: number, accuracy: Accuracy): number {
+/** Scatter of the window, the meter's accuracy and the size of the last digit, as one standard uncertainty. */
+function combined({ value, standardError, digit }: Figure, accuracy: Accuracy): number {
   return Math.hypot(
     standardError,
-    standardUncertaintyFromAccuracy({ reading, ...accuracy }),
-    standardUncertaintyFromResolution(accuracy.digitSize),
+    standardUncertaintyFromAccuracy({ reading: value, ...accuracy }),
+    standardUncertaintyFromResolution(digit ?? accuracy.digitSize),
   )
 }
 
@@ -52,22 +58,26 @@ function combined(reading: number, standardError: number, accuracy: Accuracy): n
 export async function listReadings(db: Database, { runId }: { runId: string }): Promise<ReadingView[]> {
   const rows = await loadReadings(db, runId)
   return rows.map(({ reading, by, struck, ...entries }) => {
-    const { anodeMeter, coilMeter } = entries.config.instruments
+    const { anode, coils } = accuracyOf(entries.config)
+    const { anodeVolts, uAnodeVolts, anodeDigitVolts, coilAmps, uCoilAmps, coilDigitAmps } = reading
+    const rung = entries.rung && findRung(entries.config, entries.rung.rung)
     return {
       id: reading.id,
       number: reading.number,
       capturedAt: reading.capturedAt.toISOString(),
       by,
       revision: reading.revision,
+      source: reading.source,
       polarity: reading.polarity === -1 ? -1 : 1,
-      anodeVolts: reading.anodeVolts,
-      uAnodeVolts: combined(reading.anodeVolts, reading.uAnodeVolts, anodeMeter.accuracy),
-      coilAmps: reading.coilAmps,
-      uCoilAmps: combined(reading.coilAmps, reading.uCoilAmps, coilMeter.accuracy),
-      anodeStandardErrorVolts: reading.uAnodeVolts,
-      coilStandardErrorAmps: reading.uCoilAmps,
+      anodeVolts,
+      uAnodeVolts: combined({ value: anodeVolts, standardError: uAnodeVolts, digit: anodeDigitVolts }, anode),
+      coilAmps,
+      uCoilAmps: combined({ value: coilAmps, standardError: uCoilAmps, digit: coilDigitAmps }, coils),
+      anodeStandardErrorVolts: uAnodeVolts,
+      coilStandardErrorAmps: uCoilAmps,
       edges: entries.edges,
       photos: entries.photos,
+      rung: entries.rung && rung ? { ...entries.rung, diameterMetres: rung.distanceMetres } : null,
       result: workOut(reading, entries),
       struck,
     }

@@ -1,20 +1,29 @@
 import { asc, eq, sql } from 'drizzle-orm'
 import type { PhotoDiameter } from '../analysis/reading.ts'
 import type { Database } from '../db/client.server.ts'
-import { edges, people, photoMeasurements, photos, readings } from '../db/schema.ts'
+import { edges, people, photoMeasurements, photos, readings, rungs } from '../db/schema.ts'
 
 type By = { personId: string; name: string }
 type EdgesRead = By & { leftMetres: number; rightMetres: number }
 type PhotoRead = By & PhotoDiameter & { photoId: string }
+type RungRead = By & { rung: string; settingHalfWidthAmps: number | null }
 
-/** What counts of each person for one reading, the newest of edges and photo, in the order in which it came. */
-export type Reads = { edges: EdgesRead[]; photos: PhotoRead[] }
+/**
+ * What counts of each person for one reading, the newest of edges and photo, in the order in which it came; or the rung
+ * that the beam met, the newest of anyone.
+ */
+export type Reads = { edges: EdgesRead[]; photos: PhotoRead[]; rung: RungRead | null }
 
-export const noReads: Reads = { edges: [], photos: [] }
+export const noReads: Reads = { edges: [], photos: [], rung: null }
 
 /** What people read of the beam, by reading of a run. */
 export async function findReads(db: Database, runId: string): Promise<Map<string, Reads>> {
-  const rows = (await Promise.all([selectEdges(db, runId), selectPhotos(db, runId)])).flat()
+  const [rungOf, ...both] = await Promise.all([
+    findRungs(db, runId),
+    selectEdges(db, runId),
+    selectPhotos(db, runId),
+  ])
+  const rows = both.flat()
   const byReading = new Map<string, Map<string, (typeof rows)[number]>>()
   // Sorting keeps the order in which the rows of one millisecond were written.
   for (const row of rows.toSorted((a, b) => a.at.getTime() - b.at.getTime())) {
@@ -22,18 +31,38 @@ export async function findReads(db: Database, runId: string): Promise<Map<string
     byPerson.delete(row.by.personId)
     byReading.set(row.readingId, byPerson.set(row.by.personId, row))
   }
+  const readingIds = new Set([...byReading.keys(), ...rungOf.keys()])
   return new Map(
-    [...byReading].map(([readingId, byPerson]) => {
-      const newest = [...byPerson.values()]
+    [...readingIds].map((readingId) => {
+      const newest = [...(byReading.get(readingId)?.values() ?? [])]
       return [
         readingId,
         {
           edges: newest.flatMap(({ by, edges }) => (edges ? [{ ...by, ...edges }] : [])),
           photos: newest.flatMap(({ by, photo }) => (photo ? [{ ...by, ...photo }] : [])),
+          rung: rungOf.get(readingId) ?? null,
         },
       ]
     }),
   )
+}
+
+async function findRungs(db: Database, runId: string): Promise<Map<string, RungRead>> {
+  const rows = await db
+    .select({
+      readingId: rungs.readingId,
+      personId: rungs.personId,
+      name: people.name,
+      rung: rungs.rung,
+      settingHalfWidthAmps: rungs.settingHalfWidthAmps,
+    })
+    .from(rungs)
+    .innerJoin(readings, eq(readings.id, rungs.readingId))
+    .innerJoin(people, eq(people.id, rungs.personId))
+    .where(eq(readings.runId, runId))
+    .orderBy(asc(rungs.enteredAt), asc(sql`${rungs}.rowid`))
+  // Of several rows the newest stays.
+  return new Map(rows.map(({ readingId, ...rung }) => [readingId, rung]))
 }
 
 async function selectEdges(db: Database, runId: string) {

@@ -2,7 +2,7 @@ import { and, asc, eq } from 'drizzle-orm'
 import { type EdgeSpread, pooledEdgeSpread } from '../analysis/edge-spread.ts'
 import type { Database } from '../db/client.server.ts'
 import { benchRevisions, people, readings, strikes } from '../db/schema.ts'
-import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { CommissionedBench } from '../protocol/bench-config.ts'
 import { findReads, noReads, type Reads } from './reads.server.ts'
 
 type Strike = { reason: string; by: string; at: string }
@@ -11,7 +11,7 @@ type Strike = { reason: string; by: string; at: string }
 export type StoredReading = Reads & {
   reading: typeof readings.$inferSelect
   by: string
-  config: BenchConfig
+  config: CommissionedBench
   /** Pooled over the readings of the run that are not struck. */
   edgeSpread: EdgeSpread | null
   struck: Strike | null

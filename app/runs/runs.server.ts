@@ -37,15 +37,22 @@ export function startRun(
   return write(db, (tx) => begin(tx, { now: new Date(), ...request }))
 }
 
+/** The open run of a bench when it was begun on this calendar day (of this machine's time zone), or null. */
+export async function findRunOfToday(
+  db: Database | Transaction,
+  { benchId, now }: { benchId: string; now: Date },
+): Promise<string | null> {
+  const open = await findOpenRun(db, benchId)
+  return open && open.startedAt.toDateString() === now.toDateString() ? open.id : null
+}
+
 /**
- * The run that a reading of now belongs to: the open run of the bench when it was begun on this calendar day (of this
- * machine's time zone), else a new one, with the older one closed. So a run never holds readings of two lab days.
+ * The run that a reading of now belongs to: that of today, else a new one, with the older one closed. So a run never holds
+ * readings of two lab days.
  */
 export async function runOfToday(
   tx: Transaction,
   { benchId, personId, now }: { benchId: string; personId: string; now: Date },
 ): Promise<string> {
-  const open = await findOpenRun(tx, benchId)
-  if (open && open.startedAt.toDateString() === now.toDateString()) return open.id
-  return begin(tx, { benchId, personId, now })
+  return (await findRunOfToday(tx, { benchId, now })) ?? (await begin(tx, { benchId, personId, now }))
 }

@@ -3,7 +3,7 @@ import { data } from 'react-router'
 import { visibleTo, type Watcher } from '../benches/visible-benches.server.ts'
 import type { Database, Transaction } from '../db/client.server.ts'
 import { benches, benchRevisions, readings, strikes } from '../db/schema.ts'
-import type { BenchConfig } from '../protocol/bench-config.ts'
+import type { CommissionedBench } from '../protocol/bench-config.ts'
 
 /**
  * A reading of a bench that this person may watch, with the bench as it was when the reading was taken.
@@ -17,7 +17,7 @@ export async function requireVisibleReading(
   runId: string
   number: number
   personId: string
-  config: BenchConfig
+  config: CommissionedBench
   isStruck: boolean
 }> {
   const [reading] = await db

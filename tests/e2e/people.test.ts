@@ -117,7 +117,7 @@ test('The technician makes the room safe by holding the button; a tap does nothi
   })
 
   const student = await signInAs('student')
-  await expect(student.getByRole('article')).toHaveCount(3)
+  await expect(student.getByRole('article')).toHaveCount(4)
   await expect(student.getByRole('button', { name: /Make room safe/ })).toHaveCount(0)
   await expect(student.getByRole('button', { name: 'Make Bench 1 safe' })).toBeVisible()
 })

@@ -78,6 +78,8 @@ describe('A request that cannot be read', () => {
     '/api/tickets',
     '/benches/bench-1/commands',
     '/benches/bench-1/readings/none/edges',
+    '/benches/bench-4/checklist',
+    '/benches/bench-4/typed-readings',
     '/benches/bench-1/readings/none/strike',
   ]
   const bodies: [string, RequestInit][] = [

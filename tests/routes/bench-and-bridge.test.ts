@@ -6,7 +6,8 @@ import pino from 'pino'
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
 import { startSession } from '#app/auth/sessions.server.ts'
 import type { ActionReply } from '#app/benches/action-reply.ts'
-import { type BenchView, loadBenchView } from '#app/benches/bench-view.server.ts'
+import { loadBenchView } from '#app/benches/bench-view.server.ts'
+import { requireRuler } from '#app/benches/scale.ts'
 import type { Person } from '#app/context.ts'
 import { benchCommands, benchEvents, benchRevisions, channelSummaries } from '#app/db/schema.ts'
 import { acceptedChargeToMass } from '#app/physics/accepted-value.ts'
@@ -78,7 +79,7 @@ async function post(person: Person, path: string, fields: Record<string, string>
 }
 const command = (person: Person, fields: Record<string, string>) =>
   post(person, '/benches/bench-1/commands', fields)
-const view = (): Promise<BenchView> => loadBenchView(site.db, { benchId: 'bench-1', person: site.student })
+const view = () => loadBenchView(site.db, { benchId: 'bench-1', person: site.student })
 
 const codesOf = (reply: ActionReply) => (reply.ok ? [] : reply.refusals.map(({ code }) => code))
 
@@ -132,7 +133,7 @@ describe('A bench with its bridge', () => {
     const [reading] = (await view()).readings
     const asked = simulator.ask({ id: 1, bench: 'bench-1', ask: 'turning-points' })
     const { leftMetres, rightMetres } = (asked.ok ? asked.answer : {}) as Partial<Record<string, number>>
-    const zero = quickBench().scale.zeroMetres
+    const zero = requireRuler(quickBench()).zeroMetres
     // As an eye reads them: to half a millimetre on the scale.
     const asRead = (metres = Number.NaN) => (Math.round((metres - zero) * 2000) / 20).toFixed(2)
     const edges = { left: asRead(leftMetres), right: asRead(rightMetres) }

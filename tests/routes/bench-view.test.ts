@@ -63,7 +63,7 @@ describe('The view of a bench', () => {
     await expect(view(site.outsider)).rejects.toMatchObject({ init: { status: 404 } })
     await expect(view(site.technician, 'bench-9')).rejects.toMatchObject({ init: { status: 404 } })
     expect(await listVisibleBenches(site.db, site.outsider)).toEqual([])
-    expect(await listVisibleBenches(site.db, { id: site.student.id, role: 'student' })).toHaveLength(3)
+    expect(await listVisibleBenches(site.db, { id: site.student.id, role: 'student' })).toHaveLength(4)
   })
 
   it('follows a new revision', async () => {

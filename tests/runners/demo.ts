@@ -37,7 +37,7 @@ Coilside is at ${site.url}${host === '0.0.0.0' ? ` (and at this machine's addres
 Accounts of the demo:
 ${demoAccounts.map(({ role, email, password }) => `  ${role.padEnd(10)}  ${email.padEnd(width)}  ${password}`).join('\n')}
 
-Three virtual benches. Ctrl+C ends it: the bridge commands every output off first.`)
+Three virtual benches, and one without ports. Ctrl+C ends it: the bridge commands every output off first.`)
 
 let isEnding = false
 async function end() {

@@ -1,7 +1,7 @@
 import type { BenchView } from '#app/benches/bench-view.server.ts'
 import { useBenchState, useLink } from '#app/telemetry/telemetry.tsx'
 import { Banners } from './banners.tsx'
-import { nextStep } from './bring-up.ts'
+import { nextStep, stepNames } from './bring-up.ts'
 import { BringUpGuide } from './bring-up-guide.tsx'
 import { CaptureButton } from './capture-button.tsx'
 import { CautionsGlance } from './cautions-glance.tsx'
@@ -13,7 +13,7 @@ import { LiveResult } from './live-result.tsx'
 import { Logbook } from './logbook.tsx'
 import { edgesOf, readingWithEdges } from './logbook-rows.ts'
 import { RunHeader } from './run-header.tsx'
-import { Tube } from './tube.tsx'
+import { LiveTube } from './tube.tsx'
 import { useFreshView } from './use-fresh-view.ts'
 
 /** The bench from top to bottom: the path of the energy, what needs a person now, tube and channels, the logbook. */
@@ -38,7 +38,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
     <div className="grid grid-cols-[minmax(0,1fr)] gap-4">
       {state && (
         <div className="flex flex-wrap items-center gap-x-6 gap-y-3 xl:min-h-13 xl:flex-nowrap">
-          {step && <BringUpGuide step={step} benchId={config.benchId} />}
+          {step && <BringUpGuide step={step} order={stepNames} benchId={config.benchId} />}
           <Controls view={view} state={state} />
         </div>
       )}
@@ -53,7 +53,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
       {/* The tube is as tall as the window leaves it; on a wide one the logbook's table stands beside it. */}
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[clamp(360px,min(42vw,(100dvh_-_490px)*0.94),860px)_minmax(0,1fr)] xl:grid-cols-[clamp(360px,min(100vw_-_875px,42vw,(100dvh_-_490px)*0.94),860px)_minmax(0,1fr)] xl:grid-rows-[auto_1fr]">
         <div className="w-full min-w-0 max-lg:mx-auto max-lg:max-w-[520px] xl:sticky xl:top-18 xl:row-span-2 xl:self-start">
-          <Tube
+          <LiveTube
             benchId={config.benchId}
             config={config}
             edges={mine ? [mine.leftMetres, mine.rightMetres] : []}

@@ -40,7 +40,7 @@ export function ContactChain({ contacts }: { contacts: BenchState['contacts'] })
 }
 
 /** Make contact of IEC 60617, on its side, in the run of the line. Its leads run on to the neighbours'. */
-function MakeContact({ isClosed }: { isClosed: boolean }) {
+export function MakeContact({ isClosed }: { isClosed: boolean }) {
   return (
     <span aria-hidden="true" className="flex h-[26px]">
       <Lead />

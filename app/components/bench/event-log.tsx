@@ -8,8 +8,10 @@ const shown = 8
 
 type Line = { key: string; at: string; kind: string; sentence: string; personName: string | null }
 
+type Stored = { view: Pick<BenchView, 'log'> & { bench: { id: string } } }
+
 /** What happened here last: the stored log, with what this page has heard since. */
-export function EventLog({ view }: { view: BenchView }) {
+export function EventLog({ view }: Stored) {
   const events = useEvents(view.bench.id)
   const heard = events.map<Line>((event) => ({
     key: String(event.sequence),
@@ -18,6 +20,15 @@ export function EventLog({ view }: { view: BenchView }) {
     sentence: event.sentence,
     personName: event.personName,
   }))
+  return <NewestLines view={view} heard={heard} />
+}
+
+/** What happened here last as it is stored: of a bench that no bridge tells of. */
+export function StoredLog({ view }: Stored) {
+  return <NewestLines view={view} heard={[]} />
+}
+
+function NewestLines({ view, heard }: Stored & { heard: Line[] }) {
   const lines = mergeLog(
     view.log.map<Line>((entry) => ({ ...entry, key: `${entry.at} ${entry.kind} ${entry.sentence}` })),
     heard,

@@ -1,7 +1,7 @@
 import {
+  type BudgetBench,
   orbitMoved,
   pooledEdgeSpread,
-  type ReadingBench,
   type ReadingResult,
   readingBudget,
 } from '#app/analysis/reading.ts'
@@ -13,7 +13,7 @@ export type LiveReading =
   | { kind: 'none'; sentence: string }
   | { kind: 'result'; number: number; result: ReadingResult }
 
-type Input = { readings: ReadingView[]; state: BenchState; bench: ReadingBench; revision: number }
+type Input = { readings: ReadingView[]; state: BenchState; bench: BudgetBench; revision: number }
 
 /**
  * e/m from the voltage and current of now with the edges of the last reading that has any, as long as the orbit stands
@@ -58,13 +58,18 @@ export function liveReading({ readings, state, bench, revision }: Input): LiveRe
       },
       now,
       radiusMetres: result.diameterMetres / 2,
-      resolutionMetres: bench.scale.graduationMetres * bench.scale.readableFraction,
+      resolutionMetres: resolutionOf(bench),
     })
     return hasMoved ? none(again) : { kind: 'result', number: reading.number, result }
   } catch (error) {
     if (!(error instanceof RangeError)) throw error
     return none(`The edges of reading ${reading.number} give no orbit of this bench: read them again.`)
   }
+}
+
+/** What of the diameter can be told: at a rung, how far the beam is told from it, which is as wide as the beam is. */
+function resolutionOf({ scale, beam }: BudgetBench): number {
+  return scale.kind === 'rungs' ? beam.halfWidthMetres : scale.graduationMetres * scale.readableFraction
 }
 
 /** 'The edges give 72 % of it, the coil pair 25 %.' Shares are of the variance; small ones are left out. */

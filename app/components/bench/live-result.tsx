@@ -1,4 +1,4 @@
-import type { ReadingBench } from '#app/analysis/reading.ts'
+import type { BudgetBench } from '#app/analysis/reading.ts'
 import type { BenchView } from '#app/benches/bench-view.server.ts'
 import { readingBench } from '#app/benches/reading-bench.ts'
 import { formatConcise, formatExpanded, formatFixed } from '#app/metrology/format.ts'
@@ -7,10 +7,10 @@ import type { BenchState } from '#app/protocol/messages.ts'
 import { useLink } from '#app/telemetry/telemetry.tsx'
 import { liveReading, sharesSentence } from './live-reading.ts'
 
-const benches = new Map<string, ReadingBench>()
+const benches = new Map<string, BudgetBench>()
 
 /** One object a revision, since what is tabulated for a bench is kept with its object. */
-function benchOf(config: BenchConfig): ReadingBench {
+function benchOf(config: BenchConfig): BudgetBench {
   const key = `${config.benchId}/${config.revision}`
   const bench = benches.get(key) ?? readingBench(config)
   benches.set(key, bench)

@@ -1,14 +1,14 @@
 import { useId, useState } from 'react'
 import { href, useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
-import type { BenchView, ReadingView } from '#app/benches/bench-view.server.ts'
+import type { BenchView, ReadingView, TypedBenchView } from '#app/benches/bench-view.server.ts'
 import { AnswerLine } from '../answer-line.tsx'
 import { fixed, withUncertainty } from '../figures.ts'
 import { edgesOf } from './logbook-rows.ts'
 import { StrikeReading } from './strike-reading.tsx'
 
 type Props = {
-  view: BenchView
+  view: BenchView | TypedBenchView
   reading: ReadingView
   /** The newest reading not struck: its beam still stands, so its fields are open without asking. */
   isCurrent: boolean

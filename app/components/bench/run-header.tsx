@@ -1,11 +1,11 @@
 import { href, useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
-import type { BenchView } from '#app/benches/bench-view.server.ts'
+import type { BenchView, TypedBenchView } from '#app/benches/bench-view.server.ts'
 import { AnswerLine } from '../answer-line.tsx'
 import { LocalTime } from '../local-time.tsx'
 
 /** Which run the readings below belong to, and the button that begins another. */
-export function RunHeader({ view }: { view: BenchView }) {
+export function RunHeader({ view }: { view: BenchView | TypedBenchView }) {
   const fetcher = useFetcher<ActionReply>()
   const { run } = view
   return (

@@ -1,4 +1,4 @@
-import type { BenchConfig } from '#app/protocol/bench-config.ts'
+import type { CommissionedBench, RulerScale } from '#app/protocol/bench-config.ts'
 
 /** All in millimetres, x to the right and y up, as seen against the scale. */
 export type TubeGeometry = {
@@ -11,31 +11,56 @@ export type ScaleMark = { x: number; length: number; label: string | null }
 
 const margin = 7
 const labelRoom = 15
+const rungLength = 5
+
+type Drawn = Pick<CommissionedBench, 'scale' | 'tube' | 'gun'>
 
 /**
  * Where things stand in the picture. The beam's points already arrive as seen against the scale; bulb and gun stand
- * before a scale that lies behind them, and so look larger on it by L/(L − δ).
+ * before a scale that lies behind them, and so look larger on it by L/(L − δ). Rungs stand beside the gun, where the
+ * beam meets them.
  */
-export function tubeGeometry(config: BenchConfig): TubeGeometry {
+export function tubeGeometry(config: Drawn): TubeGeometry {
   const { scale, tube, gun } = config
-  const enlargement = scale.eyeDistanceMetres / (scale.eyeDistanceMetres - scale.distanceBehindMetres)
+  const enlargement =
+    scale.kind === 'rungs'
+      ? 1
+      : scale.eyeDistanceMetres / (scale.eyeDistanceMetres - scale.distanceBehindMetres)
   const bulbRadius = tube.bulbRadiusMetres * enlargement * 1000
-  const zero = scale.zeroMetres * 1000
-  const length = scale.lengthMetres * 1000
+  const marks = scaleMarks(config)
+  const ends = scale.kind === 'rungs' ? [gun.xMetres * 1000, ...marks.map(({ x }) => x)] : rulerEnds(scale)
+  const zero = Math.min(...ends)
+  const length = Math.max(...ends) - zero
   const left = Math.min(-bulbRadius, zero) - margin
   const right = Math.max(bulbRadius, zero + length) + margin
-  const scaleY = -(bulbRadius + 3)
+  const foot = -(bulbRadius + 3)
   const top = bulbRadius + margin
   return {
     bulbRadius,
     gun: { x: gun.xMetres * enlargement * 1000, y: gun.yMetres * enlargement * 1000 },
-    scale: { y: scaleY, zero, length, marks: scaleMarks(config) },
-    box: { left, top: -top, width: right - left, height: top - scaleY + labelRoom },
+    scale: { y: scale.kind === 'rungs' ? gun.yMetres * 1000 + rungLength / 2 : foot, zero, length, marks },
+    box: { left, top: -top, width: right - left, height: top - foot + labelRoom },
   }
 }
 
-/** A mark at every graduation, longer at each fifth, longest and labelled in centimetres at each whole centimetre. */
-export function scaleMarks({ scale }: BenchConfig): ScaleMark[] {
+function rulerEnds({ zeroMetres, lengthMetres }: RulerScale): number[] {
+  return [zeroMetres * 1000, (zeroMetres + lengthMetres) * 1000]
+}
+
+/**
+ * A mark at every graduation, longer at each fifth, longest and labelled in centimetres at each whole centimetre; or one
+ * at every rung, with its name.
+ */
+export function scaleMarks({ scale, gun }: Drawn): ScaleMark[] {
+  if (scale.kind === 'rungs') {
+    // With a positive current the electrons circle counter-clockwise: a gun that points up sends them to the left.
+    const side = gun.direction.y < 0 ? 1 : -1
+    return scale.rungs.map(({ name, distanceMetres }) => ({
+      x: (gun.xMetres + side * distanceMetres) * 1000,
+      length: rungLength,
+      label: name,
+    }))
+  }
   const graduation = scale.graduationMetres * 1000
   const count = Math.floor((scale.lengthMetres * 1000) / graduation + 1e-6)
   return Array.from({ length: count + 1 }, (_, i) => {

@@ -1,24 +1,30 @@
 import { useId, useMemo, useState } from 'react'
-import type { BenchConfig } from '#app/protocol/bench-config.ts'
+import type { CommissionedBench } from '#app/protocol/bench-config.ts'
+import type { Picture } from '#app/protocol/messages.ts'
 import { useLink, usePicture } from '#app/telemetry/telemetry.tsx'
 import { type TubeGeometry, tubeGeometry } from './tube-geometry.ts'
 import { TubeScale, TubeScene } from './tube-scene.tsx'
 
 type Props = {
-  benchId: string
-  config: BenchConfig
+  config: CommissionedBench
+  /** The beam, where the bench has a picture of it. */
+  picture: Picture | null
   /** Edges that this person entered last, metres along the scale. */
   edges: number[]
 }
 
 type Sight = { x: number; y: number }
 
-/** The tube before its scale. A sight line and an enlargement help to read the edges; the reading stays the reader's. */
-export function Tube({ benchId, config, edges }: Props) {
-  const geometry = useMemo(() => tubeGeometry(config), [config])
+/** The tube before its scale as the bridge shows it, while it does. */
+export function LiveTube({ benchId, ...props }: Omit<Props, 'picture'> & { benchId: string }) {
   const received = usePicture(benchId)
   const isLive = useLink().kind === 'connected'
-  const picture = isLive && config.picturePath !== null ? received : null
+  return <Tube {...props} picture={isLive && props.config.picturePath !== null ? received : null} />
+}
+
+/** The tube before its scale. A sight line and an enlargement help to read the edges; the reading stays the reader's. */
+export function Tube({ config, picture, edges }: Props) {
+  const geometry = useMemo(() => tubeGeometry(config), [config])
   const [sight, setSight] = useState<Sight | null>(null)
   const [isSighting, setSighting] = useState(false)
   const blurId = useId()
@@ -80,15 +86,20 @@ function toMillimetres(event: React.PointerEvent<SVGSVGElement>, { box }: TubeGe
   }
 }
 
-function tubeWords(config: BenchConfig, isSeen: boolean): string {
-  const scale = `a scale of ${Math.round(config.scale.lengthMetres * 100)} cm, a mark each ${config.scale.graduationMetres * 1000} mm`
+function scaleWords({ scale }: CommissionedBench): string {
+  if (scale.kind === 'rungs') return `rungs: ${scale.rungs.map(({ name }) => name).join(', ')}`
+  return `a scale of ${Math.round(scale.lengthMetres * 100)} cm, a mark each ${scale.graduationMetres * 1000} mm`
+}
+
+function tubeWords(config: CommissionedBench, isSeen: boolean): string {
+  const scale = scaleWords(config)
   if (config.picturePath === null) return `The scale of this bench: ${scale}. The beam is in the tube itself.`
   return `The tube with ${scale}. ${isSeen ? 'The beam is visible.' : 'No beam is visible.'}`
 }
 
 type EnlargementProps = {
   geometry: TubeGeometry
-  picture: React.ComponentProps<typeof TubeScene>['picture']
+  picture: Picture | null
   edges: number[]
   sight: Sight | null
   setSight: (sight: Sight) => void

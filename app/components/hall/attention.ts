@@ -44,12 +44,17 @@ export function byAttention<T extends { name: string; state: BenchState | null }
   )
 }
 
-/** '8 benches, 4 live, 1 tripped, 1 lost': what a glance at the room has to tell. */
-export function roomWords(states: (BenchState | null)[]): string {
+/**
+ * '8 benches, 4 live, 1 tripped, 1 lost': what a glance at the room has to tell.
+ * @param unwatched benches without ports, of which nobody is told anything
+ */
+export function roomWords(states: (BenchState | null)[], unwatched = 0): string {
   const count = (phase: BenchState['phase']) => states.filter((state) => state?.phase === phase).length
   const parts = (['live', 'tripped', 'lost'] as const)
     .map((phase) => [count(phase), phase] as const)
     .filter(([number]) => number > 0)
     .map(([number, phase]) => `${number} ${phase}`)
-  return [`${states.length} ${states.length === 1 ? 'bench' : 'benches'}`, ...parts].join(', ')
+  if (unwatched > 0) parts.push(`${unwatched} not watched`)
+  const all = states.length + unwatched
+  return [`${all} ${all === 1 ? 'bench' : 'benches'}`, ...parts].join(', ')
 }

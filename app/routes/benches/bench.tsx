@@ -1,9 +1,12 @@
 import { useEffect } from 'react'
 import { href, isRouteErrorResponse, Link, useRouteLoaderData } from 'react-router'
+import type { BenchView } from '../../benches/bench-view.server.ts'
 import { loadBenchView } from '../../benches/bench-view.server.ts'
 import { BenchPage } from '../../components/bench/bench-page.tsx'
+import { TypedBenchPage } from '../../components/bench/typed-bench-page.tsx'
 import { MakeSafeButton } from '../../components/make-safe-button.tsx'
 import { PageFrame } from '../../components/page-frame.tsx'
+import { UnwatchedFrame } from '../../components/unwatched-frame.tsx'
 import { databaseContext, personContext } from '../../context.ts'
 import type { loader as rootLoader } from '../../root.tsx'
 import { Telemetry, useBenchState } from '../../telemetry/telemetry.tsx'
@@ -35,6 +38,13 @@ export default function Bench({ loaderData: view }: Route.ComponentProps) {
   useEffect(() => {
     lastViews.set(view.bench.id, view)
   }, [view])
+  if ('ticked' in view)
+    return (
+      <UnwatchedFrame bench={view.bench}>
+        <title>{`${view.bench.name} · Coilside`}</title>
+        <TypedBenchPage key={view.bench.id} view={view} />
+      </UnwatchedFrame>
+    )
   if (!socketUrl) return null
   return (
     <Telemetry key={view.bench.id} socketUrl={socketUrl} benchId={view.bench.id}>
@@ -44,7 +54,7 @@ export default function Bench({ loaderData: view }: Route.ComponentProps) {
   )
 }
 
-function Framed({ view }: { view: Route.ComponentProps['loaderData'] }) {
+function Framed({ view }: { view: BenchView }) {
   const isAtControls = useBenchState(view.bench.id)?.controls?.personId === view.person.id
   return (
     <PageFrame

@@ -1,7 +1,7 @@
 import { Form, href, Link, redirect, useNavigation } from 'react-router'
 import { acknowledgeCautions, hasAcknowledged } from '../../benches/acknowledgements.server.ts'
 import { cautions, cautionsLimits, termOf } from '../../benches/cautions.ts'
-import { requireVisibleBench } from '../../benches/visible-benches.server.ts'
+import { requireVisibleBench, toFramed } from '../../benches/visible-benches.server.ts'
 import { BenchFrame } from '../../components/bench-frame.tsx'
 import { databaseContext, personContext } from '../../context.ts'
 import type { Route } from './+types/cautions'
@@ -9,9 +9,9 @@ import type { Route } from './+types/cautions'
 export async function loader({ params, context }: Route.LoaderArgs) {
   const db = context.get(databaseContext)
   const person = context.get(personContext)
-  const { id, name, place } = await requireVisibleBench(db, { benchId: params.benchId, person })
+  const bench = await requireVisibleBench(db, { benchId: params.benchId, person })
   return {
-    bench: { id, name, place },
+    bench: toFramed(bench),
     person: { id: person.id, role: person.role },
     isAcknowledged: await hasAcknowledged(db, person.id),
     term: termOf(new Date()),

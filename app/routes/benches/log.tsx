@@ -1,7 +1,7 @@
 import { href, Link } from 'react-router'
 import * as z from 'zod'
 import { findBenchLog, type LogEntry } from '../../benches/bench-log.server.ts'
-import { requireVisibleBench } from '../../benches/visible-benches.server.ts'
+import { requireVisibleBench, toFramed } from '../../benches/visible-benches.server.ts'
 import { logSentence } from '../../components/bench/log-words.ts'
 import { BenchFrame } from '../../components/bench-frame.tsx'
 import { LocalTime } from '../../components/local-time.tsx'
@@ -14,17 +14,17 @@ const pageSchema = z.coerce.number().int().min(1).max(100_000).catch(1)
 export async function loader({ request, params, context }: Route.LoaderArgs) {
   const db = context.get(databaseContext)
   const person = context.get(personContext)
-  const { id, name, place } = await requireVisibleBench(db, { benchId: params.benchId, person })
+  const bench = await requireVisibleBench(db, { benchId: params.benchId, person })
   const page = pageSchema.parse(new URL(request.url).searchParams.get('page') ?? 1)
   // One entry more than is shown tells whether there is an older page.
   const entries = await findBenchLog(db, {
-    benchId: id,
+    benchId: bench.id,
     reader: person,
     limit: pageLength + 1,
     offset: (page - 1) * pageLength,
   })
   return {
-    bench: { id, name, place },
+    bench: toFramed(bench),
     person: { id: person.id, role: person.role },
     page,
     entries: entries.slice(0, pageLength),

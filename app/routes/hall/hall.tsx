@@ -1,9 +1,10 @@
 import { useRouteLoaderData } from 'react-router'
 import { may } from '../../auth/capabilities.ts'
-import { listVisibleBenches } from '../../benches/visible-benches.server.ts'
+import { hasPorts, listVisibleBenches, type VisibleBench } from '../../benches/visible-benches.server.ts'
 import { roomWords } from '../../components/hall/attention.ts'
 import { BenchTile, type TileBench } from '../../components/hall/bench-tile.tsx'
 import { HoldButton } from '../../components/hall/hold-button.tsx'
+import { UnwatchedTile } from '../../components/hall/unwatched-tile.tsx'
 import { useAttentionOrder, useStates } from '../../components/hall/use-states.ts'
 import { PageFrame } from '../../components/page-frame.tsx'
 import { databaseContext, personContext } from '../../context.ts'
@@ -21,18 +22,15 @@ export async function loader({ context }: Route.LoaderArgs) {
   const person = context.get(personContext)
   const benches = await listVisibleBenches(context.get(databaseContext), person)
   return {
-    benches: benches.map(
-      ({ id, name, place, config }): TileBench => ({
-        id,
-        name,
-        place,
-        bulbRadiusMetres: config.tube.bulbRadiusMetres,
-        gun: config.gun,
-      }),
-    ),
+    benches: benches.filter(hasPorts).map(toTile),
+    unwatched: benches.filter((bench) => !hasPorts(bench)).map(toTile),
     mayMakeSafe: may(person.role, 'make-bench-safe'),
     mayMakeRoomSafe: may(person.role, 'make-room-safe'),
   }
+}
+
+function toTile({ id, name, place, config }: VisibleBench): TileBench {
+  return { id, name, place, bulbRadiusMetres: config.tube.bulbRadiusMetres, gun: config.gun }
 }
 
 export default function Hall({ loaderData }: Route.ComponentProps) {
@@ -43,20 +41,33 @@ export default function Hall({ loaderData }: Route.ComponentProps) {
       <PageFrame
         where={
           <h1>
-            <b className="font-medium">Hall</b> <RoomWords benches={loaderData.benches} />
+            <b className="font-medium">Hall</b>{' '}
+            <RoomWords benches={loaderData.benches} unwatched={loaderData.unwatched.length} />
           </h1>
         }
         makeSafe={loaderData.mayMakeRoomSafe && <RoomMakeSafe />}
       >
         <LinkLine />
-        <Tiles benches={loaderData.benches} maySafe={loaderData.mayMakeSafe} />
+        <Tiles
+          benches={loaderData.benches}
+          unwatched={loaderData.unwatched}
+          maySafe={loaderData.mayMakeSafe}
+        />
       </PageFrame>
     </Telemetry>
   )
 }
 
-function RoomWords({ benches }: { benches: TileBench[] }) {
-  const words = useStates(useTelemetryStore(), benches, roomWords, roomWords(benches.map(() => null)))
+function RoomWords({ benches, unwatched }: { benches: TileBench[]; unwatched: number }) {
+  const words = useStates(
+    useTelemetryStore(),
+    benches,
+    (states) => roomWords(states, unwatched),
+    roomWords(
+      benches.map(() => null),
+      unwatched,
+    ),
+  )
   return <span className="text-ink-soft">{words}</span>
 }
 
@@ -99,18 +110,25 @@ function crowdOf(benches: number): 'few' | 'some' | 'many' {
   return benches <= 12 ? 'some' : 'many'
 }
 
-function Tiles({ benches, maySafe }: { benches: TileBench[]; maySafe: boolean }) {
+type TilesProps = { benches: TileBench[]; unwatched: TileBench[]; maySafe: boolean }
+
+/** By need of attention; those that nobody is told of come last. */
+function Tiles({ benches, unwatched, maySafe }: TilesProps) {
   const ordered = useAttentionOrder(useTelemetryStore(), benches)
-  if (benches.length === 0)
+  const all = benches.length + unwatched.length
+  if (all === 0)
     return (
       <p className="max-w-prose">
         No bench is open to you yet. Benches come with a class: ask your instructor to add you to it.
       </p>
     )
   return (
-    <div className="tiles" data-crowd={crowdOf(benches.length)}>
+    <div className="tiles" data-crowd={crowdOf(all)}>
       {ordered.map((bench) => (
         <BenchTile key={bench.id} bench={bench} maySafe={maySafe} />
+      ))}
+      {unwatched.map((bench) => (
+        <UnwatchedTile key={bench.id} bench={bench} />
       ))}
     </div>
   )

@@ -1,0 +1,44 @@
+import type { TypedBenchView } from '#app/benches/bench-view.server.ts'
+import { BringUpGuide } from './bring-up-guide.tsx'
+import { CautionsGlance } from './cautions-glance.tsx'
+import { Checklist } from './checklist.tsx'
+import { StoredLog } from './event-log.tsx'
+import { Logbook } from './logbook.tsx'
+import { edgesOf, oldestFirst } from './logbook-rows.ts'
+import { RunHeader } from './run-header.tsx'
+import { Tube } from './tube.tsx'
+import { TypedEntry } from './typed-entry.tsx'
+import { TypedResult } from './typed-result.tsx'
+import { nextTypedStep, typedStepNames } from './typed-steps.ts'
+import { useFreshView } from './use-fresh-view.ts'
+
+/** A bench without ports from top to bottom: its checklist, its scale and what the meters show, the logbook. */
+export function TypedBenchPage({ view }: { view: TypedBenchView }) {
+  const { config } = view.bench
+  useFreshView()
+  const read = oldestFirst(view.readings).findLast(({ struck, edges }) => !struck && edges.length > 0)
+  const mine = read && edgesOf(read, view.person.id).mine
+  return (
+    <div className="grid grid-cols-[minmax(0,1fr)] gap-4">
+      <BringUpGuide step={nextTypedStep(view)} order={typedStepNames} benchId={config.benchId} />
+      <Checklist view={view} />
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[clamp(360px,min(42vw,(100dvh_-_360px)*0.94),760px)_minmax(0,1fr)]">
+        <div className="w-full min-w-0 max-lg:mx-auto max-lg:max-w-[520px]">
+          <Tube config={config} picture={null} edges={mine ? [mine.leftMetres, mine.rightMetres] : []} />
+        </div>
+        <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-5">
+          <TypedEntry view={view} />
+          <TypedResult view={view} />
+        </div>
+      </div>
+      <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] gap-2">
+        <RunHeader view={view} />
+        <Logbook view={view} />
+      </div>
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-10 gap-y-6 pt-2 lg:grid-cols-2">
+        <StoredLog view={view} />
+        <CautionsGlance benchId={config.benchId} />
+      </div>
+    </div>
+  )
+}

@@ -1,0 +1,21 @@
+import { redirect } from 'react-router'
+import { readForm } from '../../auth/request-body.server.ts'
+import { answer } from '../../benches/answer.server.ts'
+import { answerAlways } from '../../benches/answer-always.ts'
+import { benchPath } from '../../benches/bench-path.ts'
+import { databaseContext, personContext } from '../../context.ts'
+import { tickChecklist } from '../../runs/checklist.server.ts'
+import type { Route } from './+types/checklist'
+
+export const loader = ({ params }: Route.LoaderArgs) => redirect(benchPath(params))
+
+export async function action({ request, params, context }: Route.ActionArgs) {
+  const answered = await tickChecklist(context.get(databaseContext), {
+    benchId: params.benchId,
+    person: context.get(personContext),
+    form: await readForm(request),
+  })
+  return answer(request, answered, benchPath(params))
+}
+
+export const clientAction = ({ serverAction }: Route.ClientActionArgs) => answerAlways({ serverAction })
