@@ -68,17 +68,19 @@ export function uncertaintyBudget<Name extends string>(problem: {
   const value = model(values)
   if (!Number.isFinite(value)) throw new RangeError(`model must be finite at the inputs, gave ${value}`)
   const sensitivities = {} as Record<Name, number>
+  let moved = names[0] as Name
+  const along = (x: number): number => {
+    values[moved] = x
+    return model(values)
+  }
   for (const name of names) {
-    const input = inputs[name]
-    const along = (x: number): number => {
-      values[name] = x
-      return model(values)
-    }
-    const scale = Math.max(input.standardUncertainty, 1e-3 * Math.abs(input.value)) || 1e-3
-    const slope = derivative(along, input.value, scale)
+    const { value: centre, standardUncertainty } = inputs[name]
+    moved = name
+    const scale = Math.max(standardUncertainty, 1e-3 * Math.abs(centre)) || 1e-3
+    const slope = derivative(along, centre, scale)
     if (slope === null) throw new RangeError(`${name} must have a value about which the model is defined`)
     sensitivities[name] = slope.value
-    values[name] = input.value
+    values[name] = centre
   }
   return combineBudget({ value, inputs, sensitivities, correlations })
 }
