@@ -61,7 +61,7 @@ export type SeriesFit = {
 }
 
 /** A reading with all that does not change while a fit goes on. */
-type Point = {
+export type SeriesPoint = {
   volts: number
   /** k·I·g, without a sign */
   tesla: number
@@ -87,7 +87,7 @@ const scaleOf: Record<Effect, number> = {
  *
  * @throws RangeError naming the argument of the reading: not finite, not above zero, no uncertainty at all
  */
-export function seriesPoints(readings: readonly SeriesReading[], field: SeriesField): Point[] {
+export function seriesPoints(readings: readonly SeriesReading[], field: SeriesField): SeriesPoint[] {
   const k = 'pair' in field ? centreFieldTesla(field.pair, 1) : field.teslaPerAmp
   requirePositive('field.teslaPerAmp', k)
   return readings.map((reading, i) => {
@@ -135,7 +135,7 @@ function evennessOf(field: SeriesField, radius: number, polarity: 1 | -1): numbe
  * @throws RangeError naming `readings` where they are fewer than the parameters or do not determine them
  */
 export function fitSeries(
-  points: readonly Point[],
+  points: readonly SeriesPoint[],
   { effects: wanted, priors }: { effects: readonly Effect[]; priors?: Priors },
 ): SeriesFit {
   const extra = priors ? wanted.length : 0
@@ -165,7 +165,8 @@ export function fitSeries(
         const eta = (parameters[0] as number) * ELEVEN
         if (!(eta > 0)) return false
         for (let i = 0; i < points.length; i++)
-          if (!evaluate(points[i] as Point, eta, b, v, d, i, residuals, jacobian, places, size)) return false
+          if (!evaluate(points[i] as SeriesPoint, eta, b, v, d, i, residuals, jacobian, places, size))
+            return false
         for (let i = 0; i < extra; i++) {
           const effect = wanted[i] as Effect
           const { value, standardUncertainty } = priorOf(effect)
@@ -229,7 +230,7 @@ function furtherStarts(
 }
 
 /** The median of the readings' own e/m, in units of 10¹¹ C/kg. */
-function startOf(points: readonly Point[]): number {
+function startOf(points: readonly SeriesPoint[]): number {
   const own = points
     .map(({ volts, tesla, diameter }) => (2 * volts) / (tesla * (diameter / 2)) ** 2)
     .sort((a, b) => a - b)
@@ -238,7 +239,7 @@ function startOf(points: readonly Point[]): number {
 
 /** Residual f/s of one reading and its derivatives. */
 function evaluate(
-  point: Point,
+  point: SeriesPoint,
   eta: number,
   b: number,
   v: number,
@@ -297,3 +298,20 @@ function evaluate(
     )
   return Number.isFinite(f / s)
 }
+
+/**
+ * How strongly each reading feels e/m and the effects: a row a reading with ∂(f/s) by e/m in units of 10¹¹ C/kg and by each
+ * effect in units of its default prior, where no effect is present. The Fisher information is the sum of their squares.
+ */
+export function informationRows(points: readonly SeriesPoint[], chargeToMass: number): number[][] {
+  const size = 1 + effects.length
+  const residual = new Float64Array(1)
+  const row = new Float64Array(size)
+  return points.map((point) => {
+    evaluate(point, chargeToMass, 0, 0, 0, 0, residual, row, [0, 1, 2], size)
+    return [...row]
+  })
+}
+
+/** What a row of `informationRows` counts in: units of e/m and of each effect. */
+export const informationUnits = [ELEVEN, ...effects.map((effect) => scaleOf[effect])]
