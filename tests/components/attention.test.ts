@@ -46,5 +46,6 @@ describe('a tile of the hall', () => {
   it('is counted in the words of the room', () => {
     expect(roomWords([liveState(), liveState({ phase: 'lost' }), null])).toBe('3 benches, 1 live, 1 lost')
     expect(roomWords([liveState(dark)])).toBe('1 bench')
+    expect(roomWords([liveState(dark)], 1)).toBe('2 benches, 1 not watched')
   })
 })

@@ -1,7 +1,15 @@
 import { describe, expect, it } from 'vitest'
 import { nextStep } from '#app/components/bench/bring-up.ts'
+import { demoBenches } from '#app/db/demo-benches.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import { edgesBy, liveState, readingView } from './bench-state.ts'
+
+const [bench] = demoBenches
+if (!bench) throw new Error('The demo has no bench')
+const readAt = (edges: typeof bench.tube.edges, scale: typeof bench.scale = bench.scale) => ({
+  tube: { ...bench.tube, edges },
+  scale,
+})
 
 const off = { asked: 0, commanded: 0, limit: 300, on: false }
 
@@ -11,7 +19,7 @@ function step(changes: Partial<BenchState> = {}, rest: Partial<Parameters<typeof
     cautionsAcknowledged: true,
     personId: 'p1',
     readings: [],
-    edges: 'outer',
+    bench: readAt('outer'),
     ...rest,
   })
 }
@@ -55,9 +63,24 @@ describe('the next step of the bring-up', () => {
   })
 
   it('says which edges are read at this bench', () => {
-    const why = (edges: 'outer' | 'middle') => step({}, { readings: [readingView()], edges })?.why
-    expect(why('outer')).toContain('Read both outer edges off the scale')
-    expect(why('middle')).toContain('Read the middle of the beam on both sides off the scale')
+    const why = (edges: 'outer' | 'inner' | 'middle') =>
+      step({}, { readings: [readingView()], bench: readAt(edges) })?.why
+    expect(why('outer')).toContain('Read the outer edges of the beam, left and right, off the scale')
+    expect(why('inner')).toContain('Read the inner edges of the beam, left and right, off the scale')
+    expect(why('middle')).toContain('Read the centre line of the beam, left and right, off the scale')
+  })
+
+  it('asks for the rung where the bench has rungs, and says what has to meet it', () => {
+    const rungs = {
+      kind: 'rungs',
+      rungs: [{ name: '8 cm', distanceMetres: 0.08 }],
+      uDistanceMetres: 0.0002,
+    } as const
+    const at = { bench: readAt('outer', { ...rungs, rungs: [...rungs.rungs] }) }
+    expect(step({}, { ...at, readings: [readingView()] })?.why).toBe(
+      'Reading 1 has no rung. Choose the one that the beam meets: outer edge of the beam on the rung.',
+    )
+    expect(step({ coils: off }, at)?.why).toContain('meets a rung')
   })
 
   it('does not ask for edges that can no longer be seen, nor for those of a struck reading', () => {

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import { pathOf, scaleMarks, tubeGeometry } from '#app/components/bench/tube-geometry.ts'
-import { demoBenches } from '#app/db/demo-benches.ts'
+import { demoBenches, demoTypedBench } from '#app/db/demo-benches.ts'
 
 function bench(benchId: string) {
   const config = demoBenches.find((it) => it.benchId === benchId)
@@ -25,6 +25,22 @@ describe('the scale of the tube', () => {
     const { bulbRadius } = tubeGeometry(bench('bench-2'))
     expect(bulbRadius).toBeCloseTo((85 * 600) / (600 - 80), 9)
     expect(tubeGeometry(bench('bench-1')).bulbRadius).toBeCloseTo(80, 9)
+  })
+
+  it('has rungs where the beam meets them: to the left of a gun that points up', () => {
+    const rungs = [
+      { name: '6 cm', distanceMetres: 0.06 },
+      { name: '8 cm', distanceMetres: 0.08 },
+    ]
+    const config = { ...demoTypedBench, scale: { kind: 'rungs' as const, rungs, uDistanceMetres: 0.0002 } }
+    const { scale, gun, box } = tubeGeometry(config)
+    expect(gun.x).toBeCloseTo(42, 9)
+    expect(scale.marks.map(({ x, label }) => [Math.round(x), label])).toEqual([
+      [-18, '6 cm'],
+      [-38, '8 cm'],
+    ])
+    expect([scale.zero, scale.zero + scale.length].map(Math.round)).toEqual([-38, 42])
+    expect(box.top + box.height).toBeGreaterThan(-scale.y)
   })
 
   it('holds bulb and scale', () => {

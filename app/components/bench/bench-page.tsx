@@ -30,7 +30,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
       cautionsAcknowledged: view.cautionsAcknowledged,
       personId: view.person.id,
       readings: view.readings,
-      edges: config.tube.edges,
+      bench: config,
     })
   const read = readingWithEdges(view.readings)
   const mine = read && edgesOf(read, view.person.id).mine

@@ -1,6 +1,7 @@
 import type { ReadingView } from '#app/benches/bench-view.server.ts'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
+import { edgeConvention } from './edge-words.ts'
 import { readingToRead } from './logbook-rows.ts'
 
 export const stepNames = [
@@ -22,14 +23,8 @@ type Input = {
   cautionsAcknowledged: boolean
   personId: string
   readings: ReadingView[]
-  /** Which edges of the beam are read. */
-  edges: BenchConfig['tube']['edges']
-}
-
-const edgeWords = {
-  outer: 'both outer edges',
-  inner: 'both inner edges',
-  middle: 'the middle of the beam on both sides',
+  /** What of the beam is read, and on what. */
+  bench: Pick<BenchConfig, 'tube' | 'scale'>
 }
 
 /** The one thing to do next, in the order in which a tube is brought up, and why. Null while the bench is tripped or lost. */
@@ -38,9 +33,10 @@ export function nextStep({
   cautionsAcknowledged,
   personId,
   readings,
-  edges,
+  bench,
 }: Input): BringUpStep | null {
   if (state.phase === 'unconfigured' || state.phase === 'lost' || state.phase === 'tripped') return null
+  const hasRungs = bench.scale.kind === 'rungs'
   const step = (index: number, why: string): BringUpStep => ({
     index,
     name: stepNames[index] ?? stepNames[0],
@@ -61,12 +57,19 @@ export function nextStep({
   if (!state.anode.on || state.anode.asked === 0)
     return step(4, 'The beam appears when the electrons have enough energy to make the gas glow.')
   if (!state.coils.on || state.coils.asked === 0)
-    return step(5, 'Raise it until the beam closes to a circle inside the glass.')
+    return step(
+      5,
+      hasRungs
+        ? 'Raise it until the beam closes to a circle and meets a rung.'
+        : 'Raise it until the beam closes to a circle inside the glass.',
+    )
   const current = readingToRead(readings)
   if (current && isSameSetting(current, state) && !current.edges.some((read) => read.personId === personId))
     return step(
       8,
-      `Reading ${current.number} has no edges of yours. Read ${edgeWords[edges]} off the scale while the beam stands.`,
+      hasRungs
+        ? `Reading ${current.number} has no rung. Choose the one that the beam meets: ${edgeConvention(bench)}.`
+        : `Reading ${current.number} has no edges of yours. Read the ${edgeConvention(bench)}, left and right, off the scale while it stands.`,
     )
   const unsettled = (['anodeVolts', 'coilAmps'] as const).find(
     (channel) => state.channels[channel]?.state !== 'settled',

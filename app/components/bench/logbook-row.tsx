@@ -4,7 +4,9 @@ import type { ActionReply } from '#app/benches/action-reply.ts'
 import type { BenchView, ReadingView, TypedBenchView } from '#app/benches/bench-view.server.ts'
 import { AnswerLine } from '../answer-line.tsx'
 import { fixed, withUncertainty } from '../figures.ts'
+import { edgeConvention } from './edge-words.ts'
 import { edgesOf } from './logbook-rows.ts'
+import { RungCells } from './rung-cells.tsx'
 import { StrikeReading } from './strike-reading.tsx'
 
 type Props = {
@@ -20,10 +22,15 @@ const named =
 
 const centimetres = (metres: number) => fixed(metres * 100, 2)
 
+function againWords({ rung }: ReadingView, isMine: boolean, hasRungs: boolean): string {
+  if (hasRungs) return rung ? 'choose again' : 'choose the rung'
+  return isMine ? 'read again' : 'read the edges'
+}
+
 /** One reading: what was captured, the edges that this person read, what follows, and what others read. */
 export function LogbookRow({ view, reading, isCurrent }: Props) {
   const id = useId()
-  const { benchId } = view.bench.config
+  const { benchId, scale } = view.bench.config
   const fetcher = useFetcher<ActionReply>()
   const { mine, others, spreadMetres } = edgesOf(reading, view.person.id)
   const [isAsked, setAsked] = useState(false)
@@ -34,7 +41,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
     setAnswered(fetcher.data)
     if (fetcher.data?.ok) setAsked(false)
   }
-  const isEntry = !reading.struck && (isAsked || (isCurrent && !mine))
+  const isEntry = !reading.struck && (isAsked || (isCurrent && !reading.rung && !mine))
   const errors = fetcher.data && !fetcher.data.ok ? fetcher.data.errors : {}
   const label = reading.number
   // On a real bench in a dark room the tube alone may glow.
@@ -71,7 +78,10 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
       )}
     </>
   )
-  const diameter = reading.result?.diameterMetres ?? (mine ? mine.rightMetres - mine.leftMetres : null)
+  const diameter =
+    reading.result?.diameterMetres ??
+    reading.rung?.diameterMetres ??
+    (mine ? mine.rightMetres - mine.leftMetres : null)
   const cell = `px-2 py-1.5 ${named} ${reading.struck ? 'line-through' : ''}`
   return (
     <tr
@@ -91,12 +101,25 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
       <td className={cell} data-name="coils A">
         {withUncertainty(reading.coilAmps, reading.uCoilAmps)}
       </td>
-      <td className={cell} data-name="left cm">
-        {isEntry ? field('left', left, setLeft) : mine && centimetres(mine.leftMetres)}
-      </td>
-      <td className={cell} data-name="right cm">
-        {isEntry ? field('right', right, setRight) : mine && centimetres(mine.rightMetres)}
-      </td>
+      {scale.kind === 'rungs' ? (
+        <RungCells
+          form={id}
+          reading={reading}
+          scale={scale}
+          isEntry={isEntry}
+          errors={errors}
+          className={cell}
+        />
+      ) : (
+        <>
+          <td className={cell} data-name="left cm">
+            {isEntry ? field('left', left, setLeft) : mine && centimetres(mine.leftMetres)}
+          </td>
+          <td className={cell} data-name="right cm">
+            {isEntry ? field('right', right, setRight) : mine && centimetres(mine.rightMetres)}
+          </td>
+        </>
+      )}
       <td className={cell} data-name="d cm">
         {diameter !== null && centimetres(diameter)}
       </td>
@@ -106,6 +129,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
       </td>
       <td className="px-3 py-1.5 text-left whitespace-normal stacked:col-span-2 stacked:p-0">
         <div className="flex flex-wrap items-center gap-x-3 gap-y-1 text-ink-soft">
+          {reading.source === 'typed' && <span>typed</span>}
           {isEntry && (
             <fetcher.Form
               id={id}
@@ -118,10 +142,11 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
                 disabled={fetcher.state !== 'idle'}
                 className="button button-small whitespace-nowrap"
               >
-                Enter edges
+                {scale.kind === 'rungs' ? 'Enter the rung' : 'Enter edges'}
               </button>
             </fetcher.Form>
           )}
+          {isEntry && <span>{edgeConvention(view.bench.config)}</span>}
           {reading.struck && (
             <span>
               struck by {reading.struck.by}: {reading.struck.reason}
@@ -130,12 +155,15 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
           {others.length > 0 && <Others others={others} spreadMetres={spreadMetres} />}
           {!reading.struck && !isEntry && (
             <button type="button" onClick={readAgain} className="link-alone">
-              {mine ? 'read again' : 'read the edges'}
+              {againWords(reading, mine !== null, scale.kind === 'rungs')}
               <span className="sr-only"> of reading {label}</span>
             </button>
           )}
           {!reading.struck && <StrikeReading benchId={benchId} readingId={reading.id} number={label} />}
-          <AnswerLine reply={fetcher.data?.ok ? undefined : fetcher.data} fields={['left', 'right']} />
+          <AnswerLine
+            reply={fetcher.data?.ok ? undefined : fetcher.data}
+            fields={['left', 'right', 'rung', 'halfWidth']}
+          />
         </div>
       </td>
     </tr>
