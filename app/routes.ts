@@ -21,6 +21,9 @@ export default [
       route('checklist', 'routes/benches/checklist.ts'),
       route('typed-readings', 'routes/benches/typed-readings.ts'),
       route('readings/:readingId/edges', 'routes/benches/edges.ts'),
+      route('readings/:readingId/photo', 'routes/benches/photo.tsx'),
+      route('readings/:readingId/photos/:photoId', 'routes/benches/photo-picture.ts'),
+      route('readings/:readingId/photos/:photoId/measurements', 'routes/benches/photo-measurements.ts'),
       route('readings/:readingId/strike', 'routes/benches/strike.ts'),
     ]),
 

@@ -19,6 +19,7 @@ export const ownCodes = {
   hasInstruments: 'has-instruments',
   cautionsOpen: 'cautions-open',
   checklistOpen: 'checklist-open',
+  tooManyPhotos: 'too-many-photos',
 } as const
 
 export const done = (answer: string): ActionReply => ({ ok: true, answer })

@@ -80,6 +80,7 @@ describe('A request that cannot be read', () => {
     '/benches/bench-1/readings/none/edges',
     '/benches/bench-4/checklist',
     '/benches/bench-4/typed-readings',
+    '/benches/bench-1/readings/none/photos/none/measurements',
     '/benches/bench-1/readings/none/strike',
   ]
   const bodies: [string, RequestInit][] = [

@@ -1,7 +1,8 @@
 import { sql } from 'drizzle-orm'
 import { afterAll, beforeAll, beforeEach, describe, expect, it, vi } from 'vitest'
 import { startSession } from '#app/auth/sessions.server.ts'
-import { edges, readings, runs, strikes } from '#app/db/schema.ts'
+import { edges, photoMeasurements, photos, readings, runs, strikes } from '#app/db/schema.ts'
+import { keepPhoto } from '#app/files/photo-files.server.ts'
 import routes from '#app/routes.ts'
 import { storeCapture } from '#app/runs/capture.server.ts'
 import { type AppHandler, startApp } from '#tests/support/app-handler.ts'
@@ -20,6 +21,7 @@ let app: AppHandler
 let bridge: StandInBridge
 let site: ClassSite
 let readingId: string
+let photoId: string
 
 beforeAll(async () => {
   bridge = await startStandInBridge(secret)
@@ -34,12 +36,20 @@ afterAll(async () => {
   await bridge.close()
 })
 
-/** Each test finds one reading of bench 1, captured by the student's partner. */
+const tables = ['photo_measurements', 'photos', 'edges', 'strikes', 'reading_samples', 'readings', 'runs']
+
+/** Each test finds one reading of bench 1, captured by the student's partner, with a photo of theirs. */
 beforeEach(async () => {
-  for (const table of ['edges', 'strikes', 'reading_samples', 'readings', 'runs'])
-    await site.db.run(sql.raw(`delete from ${table}`))
+  for (const table of tables) await site.db.run(sql.raw(`delete from ${table}`))
   await storeCapture(site.db, { capture: bareCapture, personId: site.partner.id })
   readingId = (await site.db.query.readings.findFirst())?.id ?? ''
+  const figures = { digest: 'none', width: 1000, height: 1000, bytes: 4 }
+  const [photo] = await site.db
+    .insert(photos)
+    .values({ readingId, personId: site.partner.id, ...figures })
+    .returning({ id: photos.id })
+  photoId = photo?.id ?? ''
+  await keepPhoto(photoId, new Uint8Array([1, 2, 3, 4]))
   bridge.asked.length = 0
   bridge.answer = ({ path }) => {
     if (path === '/make-safe') return { body: { benches: [] } }
@@ -55,7 +65,13 @@ async function send(person: Who, { path, method = 'GET', fields = {}, from = ori
   if (person !== 'nobody') headers.set('Cookie', (await startSession(site[person].id)).split(';')[0] ?? '')
   if (method !== 'GET' && from !== null) headers.set('Origin', from)
   const body = method === 'GET' ? null : new URLSearchParams(fields)
-  return app.handle(new Request(origin + path.replace(':readingId', readingId), { method, headers, body }))
+  return app.handle(
+    new Request(origin + path.replace(':readingId', readingId).replace(':photoId', photoId), {
+      method,
+      headers,
+      body,
+    }),
+  )
 }
 
 /** Rows that a refused request must not change. Sessions come with every request of a test. */
@@ -69,11 +85,22 @@ const rows = async () => ({
   runs: await site.db.$count(runs),
   readings: await site.db.$count(readings),
   edges: await site.db.$count(edges),
+  photos: await site.db.$count(photos),
+  photoMeasurements: await site.db.$count(photoMeasurements),
   strikes: await site.db.$count(strikes),
 })
 
 type Row = [method: 'GET' | 'POST', route: string, statuses: number[], fields?: Record<string, string>]
 const bench = '/benches/:benchId'
+
+const marks = JSON.stringify({
+  scaleMarks: [0, 12].map((cm) => ({ x: 50 * cm, y: 900, centimetres: `${cm}` })),
+  points: [
+    { x: 100, y: 300 },
+    { x: 300, y: 100 },
+    { x: 500, y: 300 },
+  ],
+})
 
 /** Every route with everyone: nobody signed in, a student of another class, a student, an instructor, a technician. */
 const table: Row[] = [
@@ -108,6 +135,12 @@ const table: Row[] = [
   ['POST', `${bench}/typed-readings`, [401, 404, 409, 409, 409], { volts: '200', amps: '1.5' }],
   ['GET', `${bench}/readings/:readingId/edges`, [302, 302, 302, 302, 302]],
   ['POST', `${bench}/readings/:readingId/edges`, [401, 404, 200, 200, 200], { left: '3', right: '11' }],
+  ['GET', `${bench}/readings/:readingId/photo`, [302, 404, 200, 200, 200]],
+  // Without a file, which is answered beside its field.
+  ['POST', `${bench}/readings/:readingId/photo`, [401, 404, 400, 400, 400]],
+  ['GET', `${bench}/readings/:readingId/photos/:photoId`, [302, 404, 200, 200, 200]],
+  ['GET', `${bench}/readings/:readingId/photos/:photoId/measurements`, [302, 302, 302, 302, 302]],
+  ['POST', `${bench}/readings/:readingId/photos/:photoId/measurements`, [401, 404, 200, 200, 200], { marks }],
   ['GET', `${bench}/readings/:readingId/strike`, [302, 302, 302, 302, 302]],
   ['POST', `${bench}/readings/:readingId/strike`, [401, 404, 403, 200, 200], { reason: 'Read badly.' }],
   ['POST', '/api/tickets', [401, 200, 200, 200, 200]],
@@ -172,6 +205,7 @@ describe('A request for the data of one route alone', () => {
     ['/benches/bench-1', 'routes/benches/bench'],
     ['/benches/bench-1/log', 'routes/benches/log'],
     ['/benches/bench-1/cautions', 'routes/benches/cautions'],
+    ['/benches/bench-1/readings/:readingId/photo', 'routes/benches/photo'],
     ['/hall', 'routes/hall/hall'],
   ])('of %s passes the guards as well', async (path, id) => {
     const data = `${path}.data?_routes=${encodeURIComponent(id)}`

@@ -11,7 +11,7 @@ import { EnergyPath } from './energy-path.tsx'
 import { EventLog } from './event-log.tsx'
 import { LiveResult } from './live-result.tsx'
 import { Logbook } from './logbook.tsx'
-import { edgesOf, readingWithEdges } from './logbook-rows.ts'
+import { edgesOf, readingWithDiameter } from './logbook-rows.ts'
 import { RunHeader } from './run-header.tsx'
 import { LiveTube } from './tube.tsx'
 import { useFreshView } from './use-fresh-view.ts'
@@ -32,7 +32,7 @@ export function BenchPage({ view, isAtControls }: { view: BenchView; isAtControl
       readings: view.readings,
       bench: config,
     })
-  const read = readingWithEdges(view.readings)
+  const read = readingWithDiameter(view.readings)
   const mine = read && edgesOf(read, view.person.id).mine
   return (
     <div className="grid grid-cols-[minmax(0,1fr)] gap-4">

@@ -2,7 +2,7 @@ import type { ReadingView } from '#app/benches/bench-view.server.ts'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
 import { edgeConvention } from './edge-words.ts'
-import { readingToRead } from './logbook-rows.ts'
+import { isReadBy, readingToRead } from './logbook-rows.ts'
 
 export const stepNames = [
   'Acknowledge the cautions',
@@ -64,7 +64,7 @@ export function nextStep({
         : 'Raise it until the beam closes to a circle inside the glass.',
     )
   const current = readingToRead(readings)
-  if (current && isSameSetting(current, state) && !current.edges.some((read) => read.personId === personId))
+  if (current && isSameSetting(current, state) && !isReadBy(current, personId))
     return step(
       8,
       hasRungs

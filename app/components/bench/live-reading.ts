@@ -7,21 +7,21 @@ import {
 } from '#app/analysis/reading.ts'
 import type { ReadingView } from '#app/benches/bench-view.server.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
-import { readingWithEdges } from './logbook-rows.ts'
+import { readingWithDiameter } from './logbook-rows.ts'
 
 export type LiveReading =
   | { kind: 'none'; sentence: string }
-  | { kind: 'result'; number: number; result: ReadingResult }
+  | { kind: 'result'; number: number; source: 'edges' | 'photo'; result: ReadingResult }
 
 type Input = { readings: ReadingView[]; state: BenchState; bench: BudgetBench; revision: number }
 
 /**
- * e/m from the voltage and current of now with the edges of the last reading that has any, as long as the orbit stands
- * where it stood then. Otherwise what to do, in one sentence.
+ * e/m from the voltage and current of now with the edges or the photo of the last reading that has any, as long as the
+ * orbit stands where it stood then. Otherwise what to do, in one sentence.
  */
 export function liveReading({ readings, state, bench, revision }: Input): LiveReading {
   const none = (sentence: string): LiveReading => ({ kind: 'none', sentence })
-  const reading = readingWithEdges(readings)
+  const reading = readingWithDiameter(readings)
   if (!reading) return none('Capture a reading and read its two edges; then it stands here.')
   if (state.phase !== 'live') return none('No beam: the anode is off.')
   const voltage = state.channels.anodeVolts
@@ -49,7 +49,10 @@ export function liveReading({ readings, state, bench, revision }: Input): LiveRe
       uCurrentAmps: current.standardDeviation ?? 0,
       leftEdges,
       rightEdges,
-      edgeSpread: pooledEdgeSpread(readings.filter(({ struck }) => !struck).map(({ edges }) => edges)),
+      photos: reading.photos,
+      edgeSpread: pooledEdgeSpread(
+        readings.filter(({ struck }) => !struck).map(({ edges, photos }) => [...edges, ...photos]),
+      ),
     })
     const hasMoved = orbitMoved({
       before: {
@@ -60,7 +63,9 @@ export function liveReading({ readings, state, bench, revision }: Input): LiveRe
       radiusMetres: result.diameterMetres / 2,
       resolutionMetres: resolutionOf(bench),
     })
-    return hasMoved ? none(again) : { kind: 'result', number: reading.number, result }
+    if (hasMoved) return none(again)
+    const source = reading.edges.length > 0 ? 'edges' : 'photo'
+    return { kind: 'result', number: reading.number, source, result }
   } catch (error) {
     if (!(error instanceof RangeError)) throw error
     return none(`The edges of reading ${reading.number} give no orbit of this bench: read them again.`)

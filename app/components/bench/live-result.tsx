@@ -37,7 +37,9 @@ export function LiveResult({ view, state }: { view: BenchView; state: BenchState
   const { value, standardUncertainty, expandedUncertainty, coverageFactor, groups } = live.result
   return (
     <section aria-label="e/m" className="@container min-w-0">
-      <p className="text-ink-soft">e/m, with the edges of reading {live.number}</p>
+      <p className="text-ink-soft">
+        e/m, with the {live.source} of reading {live.number}
+      </p>
       {/* On a real bench in a dark room the tube alone may glow. */}
       <p
         className={`text-[clamp(20px,7cqi,40px)] leading-tight whitespace-nowrap font-bold tracking-tighter text-beam ${isVirtual ? '' : 'dark:text-ink'}`}

@@ -1,6 +1,7 @@
 import { useId, useState } from 'react'
-import { href, useFetcher } from 'react-router'
+import { href, Link, useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
+import { photoPath } from '#app/benches/bench-path.ts'
 import type { BenchView, ReadingView, TypedBenchView } from '#app/benches/bench-view.server.ts'
 import { AnswerLine } from '../answer-line.tsx'
 import { fixed, withUncertainty } from '../figures.ts'
@@ -32,7 +33,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
   const id = useId()
   const { benchId, scale } = view.bench.config
   const fetcher = useFetcher<ActionReply>()
-  const { mine, others, spreadMetres } = edgesOf(reading, view.person.id)
+  const { mine, myPhoto, others, spreadMetres } = edgesOf(reading, view.person.id)
   const [isAsked, setAsked] = useState(false)
   const [left, setLeft] = useState('')
   const [right, setRight] = useState('')
@@ -41,7 +42,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
     setAnswered(fetcher.data)
     if (fetcher.data?.ok) setAsked(false)
   }
-  const isEntry = !reading.struck && (isAsked || (isCurrent && !reading.rung && !mine))
+  const isEntry = !reading.struck && (isAsked || (isCurrent && !reading.rung && !mine && !myPhoto))
   const errors = fetcher.data && !fetcher.data.ok ? fetcher.data.errors : {}
   const label = reading.number
   // On a real bench in a dark room the tube alone may glow.
@@ -81,6 +82,7 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
   const diameter =
     reading.result?.diameterMetres ??
     reading.rung?.diameterMetres ??
+    myPhoto?.diameterMetres ??
     (mine ? mine.rightMetres - mine.leftMetres : null)
   const cell = `px-2 py-1.5 ${named} ${reading.struck ? 'line-through' : ''}`
   return (
@@ -113,7 +115,11 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
       ) : (
         <>
           <td className={cell} data-name="left cm">
-            {isEntry ? field('left', left, setLeft) : mine && centimetres(mine.leftMetres)}
+            {isEntry
+              ? field('left', left, setLeft)
+              : mine
+                ? centimetres(mine.leftMetres)
+                : myPhoto && 'photo'}
           </td>
           <td className={cell} data-name="right cm">
             {isEntry ? field('right', right, setRight) : mine && centimetres(mine.rightMetres)}
@@ -159,6 +165,12 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
               <span className="sr-only"> of reading {label}</span>
             </button>
           )}
+          {scale.kind !== 'rungs' && (!reading.struck || reading.photos.length > 0) && (
+            <Link to={photoPath({ benchId, readingId: reading.id })} className="link-alone">
+              {reading.struck ? 'see the photo' : 'measure from a photo'}
+              <span className="sr-only"> of reading {label}</span>
+            </Link>
+          )}
           {!reading.struck && <StrikeReading benchId={benchId} readingId={reading.id} number={label} />}
           <AnswerLine
             reply={fetcher.data?.ok ? undefined : fetcher.data}
@@ -170,13 +182,16 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
   )
 }
 
-function Others({ others, spreadMetres }: { others: ReadingView['edges']; spreadMetres: number | null }) {
+type OthersProps = Pick<ReturnType<typeof edgesOf>, 'others' | 'spreadMetres'>
+
+function Others({ others, spreadMetres }: OthersProps) {
   return (
     <span>
       {others
-        .map(
-          ({ name, leftMetres, rightMetres }) =>
-            `${name}: ${centimetres(leftMetres)} to ${centimetres(rightMetres)}`,
+        .map((read) =>
+          'diameterMetres' in read
+            ? `${read.name}: ${centimetres(read.diameterMetres)} on a photo`
+            : `${read.name}: ${centimetres(read.leftMetres)} to ${centimetres(read.rightMetres)}`,
         )
         .join('; ')}
       {spreadMetres !== null && `; diameters spread over ${fixed(spreadMetres * 1000, 1)} mm`}

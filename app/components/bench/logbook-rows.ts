@@ -5,25 +5,41 @@ export function readingToRead(readings: ReadingView[]): ReadingView | null {
   return newestFirst(readings).find((reading) => !reading.struck) ?? null
 }
 
-/** The newest reading that is not struck and has edges: what a live e/m can rest on. */
-export function readingWithEdges(readings: ReadingView[]): ReadingView | null {
-  return newestFirst(readings).find((reading) => !reading.struck && reading.edges.length > 0) ?? null
+/** The newest reading that is not struck and of which someone read the diameter: what a live e/m can rest on. */
+export function readingWithDiameter(readings: ReadingView[]): ReadingView | null {
+  return newestFirst(readings).find((reading) => !reading.struck && isRead(reading)) ?? null
 }
+
+const isRead = ({ edges, photos }: ReadingView) => edges.length + photos.length > 0
+
+/** Whether this person has read the beam of a reading, at its edges or off a photo. */
+export const isReadBy = ({ edges, photos }: ReadingView, personId: string) =>
+  [...edges, ...photos].some((read) => read.personId === personId)
 
 export const oldestFirst = (readings: ReadingView[]) => readings.toSorted((a, b) => a.number - b.number)
 const newestFirst = (readings: ReadingView[]) => readings.toSorted((a, b) => b.number - a.number)
 
 type Edges = ReadingView['edges'][number]
+type PhotoRead = ReadingView['photos'][number]
 
-/** Edges of one person, and of the others with how far apart the diameters lie. */
+/** What one person read, and what others did, with how far apart the diameters on the scale lie. */
 export function edgesOf(
   reading: ReadingView,
   personId: string,
-): { mine: Edges | null; others: Edges[]; spreadMetres: number | null } {
-  const diameters = reading.edges.map(({ leftMetres, rightMetres }) => rightMetres - leftMetres)
+): {
+  mine: Edges | null
+  myPhoto: PhotoRead | null
+  others: (Edges | PhotoRead)[]
+  spreadMetres: number | null
+} {
+  const all = [...reading.edges, ...reading.photos]
+  const diameters = all.map((read) =>
+    'diameterMetres' in read ? read.diameterMetres : read.rightMetres - read.leftMetres,
+  )
   return {
     mine: reading.edges.find((edges) => edges.personId === personId) ?? null,
-    others: reading.edges.filter((edges) => edges.personId !== personId),
+    myPhoto: reading.photos.find((photo) => photo.personId === personId) ?? null,
+    others: all.filter((read) => read.personId !== personId),
     spreadMetres: diameters.length > 1 ? Math.max(...diameters) - Math.min(...diameters) : null,
   }
 }
