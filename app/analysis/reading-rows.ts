@@ -103,7 +103,7 @@ export function edgeRows(
   if (given) return givenRows(scale, given, perEdge)
   const readers = count - photos.length
   const group = readers > 0 ? 'edges' : 'photo'
-  const rows = photoRows(photos, count, perEdge)
+  const rows: Row[] = []
   if (readers > 0 && scale.kind !== 'rungs') {
     const step = (scale.graduationMetres * scale.readableFraction * readers) / count
     const resolution = standardUncertaintyFromResolution(step)
@@ -116,7 +116,7 @@ export function edgeRows(
     const standardError = spread.standardDeviationMetres / Math.sqrt(count)
     rows.push(typeA(group, 'edgeSpread', perEdge, standardError, spread.degreesOfFreedom))
   }
-  return [...rows, ...parallaxRows(scale, group, distance, perEdge)]
+  return [...rows, ...parallaxRows(scale, group, distance, perEdge), ...photoRows(photos, count, perEdge)]
 }
 
 function givenRows(scale: BudgetBench['scale'], given: GivenDiameter, perEdge: number): Row[] {

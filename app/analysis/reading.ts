@@ -2,18 +2,14 @@ import type { Contribution } from '#app/metrology/budget.ts'
 import { expandIndependent } from '#app/metrology/coverage.ts'
 import { chargeToMass } from '#app/physics/charge-to-mass.ts'
 import { speedOfLight } from '#app/physics/constants.ts'
-import {
-  requireDegreesOfFreedom,
-  requireFinite,
-  requireNotNegative,
-  requirePositive,
-} from '#app/statistics/domain.ts'
+import { requireNotNegative, requirePositive } from '#app/statistics/domain.ts'
 import { edgesOf } from './edge-mean.ts'
 import type { EvennessTable } from './evenness-table.ts'
 import { tabulateEvenness } from './evenness-table.ts'
 import { parallaxFactor } from './parallax.ts'
+import { requireBench, requireCurrent, requireReading, requireScale } from './reading-domain.ts'
 import type { BudgetGroup, Row } from './reading-rows.ts'
-import { beamRow, budgetGroups, currentRows, edgeRows, pairRows, voltageRows } from './reading-rows.ts'
+import { beamRow, currentRows, edgeRows, pairRows, voltageRows } from './reading-rows.ts'
 import type { BudgetBench, Reading } from './reading-types.ts'
 
 export { type EdgeSpread, pooledEdgeSpread } from './edge-spread.ts'
@@ -144,63 +140,6 @@ export function orbitMoved(change: {
   return ratio < 0 || Math.abs(ratio - 1) * radiusMetres > resolutionMetres
 }
 
-function requireReading(reading: Reading): void {
-  requirePositive('voltageVolts', reading.voltageVolts)
-  requireNotNegative('uVoltageVolts', reading.uVoltageVolts)
-  requireCurrent('currentAmps', reading.currentAmps)
-  requireNotNegative('uCurrentAmps', reading.uCurrentAmps)
-  requireDegreesOfFreedom(
-    'voltageDegreesOfFreedom',
-    reading.voltageDegreesOfFreedom ?? Number.POSITIVE_INFINITY,
-  )
-  requireDegreesOfFreedom(
-    'currentDegreesOfFreedom',
-    reading.currentDegreesOfFreedom ?? Number.POSITIVE_INFINITY,
-  )
-  requireNotNegative('voltageDigitVolts', reading.voltageDigitVolts ?? 0)
-  requireNotNegative('currentDigitAmps', reading.currentDigitAmps ?? 0)
-}
-
-/** The coil pair and the gun are looked at when they are tabulated. */
-function requireBench(bench: BudgetBench): void {
-  const { scale, beam, anodeMeter, coilMeter, fieldFactor } = bench
-  if (scale.kind !== 'rungs') {
-    requirePositive('scale.graduationMetres', scale.graduationMetres)
-    requirePositive('scale.readableFraction', scale.readableFraction)
-    requireNotNegative('scale.uDistanceBehindMetres', scale.uDistanceBehindMetres)
-  }
-  requireNotNegative('beam.halfWidthMetres', beam.halfWidthMetres)
-  requireNotNegative('anodeMeter.percentOfReading', anodeMeter.percentOfReading)
-  requireNotNegative('anodeMeter.digits', anodeMeter.digits)
-  requireNotNegative('anodeMeter.digitSizeVolts', anodeMeter.digitSizeVolts)
-  requireFinite('anodeMeter.correctionVolts', anodeMeter.correctionVolts ?? 0)
-  requireNotNegative('anodeMeter.uCorrectionVolts', anodeMeter.uCorrectionVolts ?? 0)
-  requireNotNegative('coilMeter.percentOfReading', coilMeter.percentOfReading)
-  requireNotNegative('coilMeter.digits', coilMeter.digits)
-  requireNotNegative('coilMeter.digitSizeAmps', coilMeter.digitSizeAmps)
-  if (bench.coilPair) {
-    requireNotNegative('uTurns', bench.uTurns ?? 0)
-    requireNotNegative('uRadiusMetres', bench.uRadiusMetres ?? 0)
-    requireNotNegative('uSeparationMetres', bench.uSeparationMetres ?? 0)
-  }
-  if (fieldFactor) {
-    requirePositive('fieldFactor.teslaPerAmp', fieldFactor.teslaPerAmp)
-    requireNotNegative('fieldFactor.standardUncertainty', fieldFactor.standardUncertainty)
-  }
-}
-
-function requireScale(scale: BudgetBench['scale'], { leftEdges, given }: Reading): void {
-  if (scale.kind === 'rungs' && leftEdges.length > 0)
-    throw new RangeError('leftEdges must be empty: the scale of this bench has rungs')
-  if (scale.kind !== 'rungs' && given?.source === 'rung')
-    throw new RangeError('given.source must be stated: the scale of this bench has no rungs')
-}
-
-function requireCurrent(name: string, amps: number): void {
-  requireFinite(name, amps)
-  if (amps === 0) throw new RangeError(`${name} must not be 0: without a field there is no orbit`)
-}
-
 function tableOf(bench: BudgetBench, sense: 1 | -1): EvennessTable {
   const known = tables.get(bench) ?? new Map<1 | -1, EvennessTable>()
   tables.set(bench, known)
@@ -216,26 +155,32 @@ function summarise(value: number, rows: readonly Row[], orbit: Orbit): ReadingRe
   const freedom = rows.map((row) => row.degreesOfFreedom)
   const expanded = expandIndependent(parts, freedom)
   const variance = expanded.standardUncertainty ** 2
-  const shares = new Map<BudgetGroup, number>()
+  const groups: ReadingResult['groups'] = []
+  let group: ReadingResult['groups'][number] | null = null
   const contributions: ReadingResult['contributions'] = {}
   let commonVariance = 0
   let independentVariance = 0
   for (let i = 0; i < rows.length; i++) {
-    const { name, group, sensitivity, standardUncertainty, degreesOfFreedom, common } = rows[i] as Row
+    const row = rows[i] as Row
     const contribution = parts[i] as number
     const square = contribution * contribution
     const share = variance > 0 ? square / variance : 0
-    contributions[name] = {
-      standardUncertainty,
-      degreesOfFreedom,
-      sensitivity,
+    contributions[row.name] = {
+      standardUncertainty: row.standardUncertainty,
+      degreesOfFreedom: row.degreesOfFreedom,
+      sensitivity: row.sensitivity,
       contribution,
       share,
-      group,
-      common,
+      group: row.group,
+      common: row.common,
     }
-    shares.set(group, (shares.get(group) ?? 0) + share)
-    if (common) commonVariance += square
+    // The rows of a group follow each other.
+    if (group === null || group.name !== row.group) {
+      group = { name: row.group, share: 0 }
+      groups.push(group)
+    }
+    group.share += share
+    if (row.common) commonVariance += square
     else independentVariance += square
   }
   return {
@@ -247,9 +192,7 @@ function summarise(value: number, rows: readonly Row[], orbit: Orbit): ReadingRe
     commonUncertainty: Math.sqrt(commonVariance),
     independentUncertainty: Math.sqrt(independentVariance),
     contributions,
-    groups: budgetGroups
-      .filter((name) => shares.has(name))
-      .map((name) => ({ name, share: shares.get(name) as number })),
+    groups,
     diameterMetres: orbit.diameterMetres,
     evenness: orbit.evenness,
     fieldTesla: orbit.fieldTesla,
