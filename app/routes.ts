@@ -27,6 +27,12 @@ export default [
       route('readings/:readingId/strike', 'routes/benches/strike.ts'),
     ]),
 
+    ...prefix('runs/:runId', [
+      route('analysis', 'routes/runs/analysis.tsx'),
+      route('plan', 'routes/runs/plan.ts'),
+      route('statement', 'routes/runs/statement.ts'),
+    ]),
+
     route('api/tickets', 'routes/api/tickets.ts'),
   ]),
 

@@ -1,7 +1,16 @@
 import { sql } from 'drizzle-orm'
 import { afterAll, beforeAll, beforeEach, describe, expect, it, vi } from 'vitest'
 import { startSession } from '#app/auth/sessions.server.ts'
-import { edges, photoMeasurements, photos, readings, runs, strikes } from '#app/db/schema.ts'
+import {
+  edges,
+  photoMeasurements,
+  photos,
+  plannedSettings,
+  readings,
+  runs,
+  statements,
+  strikes,
+} from '#app/db/schema.ts'
 import { keepPhoto } from '#app/files/photo-files.server.ts'
 import routes from '#app/routes.ts'
 import { storeCapture } from '#app/runs/capture.server.ts'
@@ -22,6 +31,7 @@ let bridge: StandInBridge
 let site: ClassSite
 let readingId: string
 let photoId: string
+let runId: string
 
 beforeAll(async () => {
   bridge = await startStandInBridge(secret)
@@ -36,13 +46,18 @@ afterAll(async () => {
   await bridge.close()
 })
 
-const tables = ['photo_measurements', 'photos', 'edges', 'strikes', 'reading_samples', 'readings', 'runs']
+const tables = [
+  ...['planned_settings', 'statements', 'photo_measurements', 'photos', 'edges', 'strikes'],
+  ...['reading_samples', 'readings', 'runs'],
+]
 
 /** Each test finds one reading of bench 1, captured by the student's partner, with a photo of theirs. */
 beforeEach(async () => {
   for (const table of tables) await site.db.run(sql.raw(`delete from ${table}`))
   await storeCapture(site.db, { capture: bareCapture, personId: site.partner.id })
-  readingId = (await site.db.query.readings.findFirst())?.id ?? ''
+  const reading = await site.db.query.readings.findFirst()
+  readingId = reading?.id ?? ''
+  runId = reading?.runId ?? ''
   const figures = { digest: 'none', width: 1000, height: 1000, bytes: 4 }
   const [photo] = await site.db
     .insert(photos)
@@ -66,11 +81,14 @@ async function send(person: Who, { path, method = 'GET', fields = {}, from = ori
   if (method !== 'GET' && from !== null) headers.set('Origin', from)
   const body = method === 'GET' ? null : new URLSearchParams(fields)
   return app.handle(
-    new Request(origin + path.replace(':readingId', readingId).replace(':photoId', photoId), {
-      method,
-      headers,
-      body,
-    }),
+    new Request(
+      origin + path.replace(':readingId', readingId).replace(':photoId', photoId).replace(':runId', runId),
+      {
+        method,
+        headers,
+        body,
+      },
+    ),
   )
 }
 
@@ -88,6 +106,8 @@ const rows = async () => ({
   photos: await site.db.$count(photos),
   photoMeasurements: await site.db.$count(photoMeasurements),
   strikes: await site.db.$count(strikes),
+  planned: await site.db.$count(plannedSettings),
+  statements: await site.db.$count(statements),
 })
 
 type Row = [method: 'GET' | 'POST', route: string, statuses: number[], fields?: Record<string, string>]
@@ -143,6 +163,17 @@ const table: Row[] = [
   ['POST', `${bench}/readings/:readingId/photos/:photoId/measurements`, [401, 404, 200, 200, 200], { marks }],
   ['GET', `${bench}/readings/:readingId/strike`, [302, 302, 302, 302, 302]],
   ['POST', `${bench}/readings/:readingId/strike`, [401, 404, 403, 200, 200], { reason: 'Read badly.' }],
+  // The run of the student's partner, in which the student took no part.
+  ['GET', '/runs/:runId/analysis', [302, 404, 404, 200, 200]],
+  ['GET', '/runs/:runId/plan', [302, 302, 302, 302, 302]],
+  [
+    'POST',
+    '/runs/:runId/plan',
+    [401, 404, 404, 200, 200],
+    { anodeVolts: '200', coilAmps: '1.5', polarity: '1' },
+  ],
+  ['GET', '/runs/:runId/statement', [302, 302, 302, 302, 302]],
+  ['POST', '/runs/:runId/statement', [401, 404, 404, 200, 200], { fit: 'general' }],
   ['POST', '/api/tickets', [401, 200, 200, 200, 200]],
   ['POST', '/api/tickets', [401, 404, 200, 200, 200], { benchId: 'bench-1' }],
   ['GET', '/api/health', [200, 200, 200, 200, 200]],
