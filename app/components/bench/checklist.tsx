@@ -92,7 +92,6 @@ function TickForm({ view }: { view: TypedBenchView }) {
                   value={contact}
                   checked={isTicked(contact)}
                   onChange={() => tick(contact)}
-                  className="size-4.5"
                 />
                 <span className={`w-16 ${isTicked(contact) ? 'text-ink-soft' : 'text-caution'}`}>
                   <MakeContact isClosed={isTicked(contact)} />

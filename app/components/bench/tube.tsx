@@ -22,7 +22,10 @@ export function LiveTube({ benchId, ...props }: Omit<Props, 'picture'> & { bench
   return <Tube {...props} picture={isLive && props.config.picturePath !== null ? received : null} />
 }
 
-/** The tube before its scale. A sight line and an enlargement help to read the edges; the reading stays the reader's. */
+/**
+ * The tube before its scale. Where the beam is in the picture, a sight line and an enlargement help to read its edges; the
+ * reading stays the reader's.
+ */
 export function Tube({ config, picture, edges }: Props) {
   const geometry = useMemo(() => tubeGeometry(config), [config])
   const [sight, setSight] = useState<Sight | null>(null)
@@ -66,14 +69,16 @@ export function Tube({ config, picture, edges }: Props) {
           )}
         </svg>
       </div>
-      <Enlargement
-        geometry={geometry}
-        picture={picture}
-        edges={marks}
-        sight={sight}
-        setSight={setSight}
-        setSighting={setSighting}
-      />
+      {config.picturePath !== null && (
+        <Enlargement
+          geometry={geometry}
+          picture={picture}
+          edges={marks}
+          sight={sight}
+          setSight={setSight}
+          setSighting={setSighting}
+        />
+      )}
     </figure>
   )
 }

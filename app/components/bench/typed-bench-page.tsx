@@ -22,18 +22,19 @@ export function TypedBenchPage({ view }: { view: TypedBenchView }) {
     <div className="grid grid-cols-[minmax(0,1fr)] gap-4">
       <BringUpGuide step={nextTypedStep(view)} order={typedStepNames} benchId={config.benchId} />
       <Checklist view={view} />
-      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[clamp(360px,min(42vw,(100dvh_-_360px)*0.94),760px)_minmax(0,1fr)]">
-        <div className="w-full min-w-0 max-lg:mx-auto max-lg:max-w-[520px]">
+      {/* The meters are typed first: where the page is one column, before the scale. */}
+      <div className="grid grid-cols-[minmax(0,1fr)] gap-x-6 gap-y-4 lg:grid-cols-[360px_minmax(0,1fr)] xl:grid-cols-[clamp(360px,min(100vw_-_875px,36vw),640px)_minmax(0,1fr)] xl:grid-rows-[auto_1fr]">
+        <div className="w-full min-w-0 max-lg:order-last max-lg:mx-auto max-lg:max-w-[520px] xl:row-span-2">
           <Tube config={config} picture={null} edges={mine ? [mine.leftMetres, mine.rightMetres] : []} />
         </div>
         <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-5">
           <TypedEntry view={view} />
           <TypedResult view={view} />
         </div>
-      </div>
-      <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] gap-2">
-        <RunHeader view={view} />
-        <Logbook view={view} />
+        <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-2 lg:max-xl:col-span-2">
+          <RunHeader view={view} />
+          <Logbook view={view} />
+        </div>
       </div>
       <div className="grid grid-cols-[minmax(0,1fr)] gap-x-10 gap-y-6 pt-2 lg:grid-cols-2">
         <StoredLog view={view} />

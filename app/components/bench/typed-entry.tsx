@@ -45,7 +45,7 @@ export function TypedEntry({ view }: { view: TypedBenchView }) {
           <div className="flex flex-wrap items-center gap-x-4 gap-y-2">
             <button
               type="submit"
-              disabled={fetcher.state !== 'idle'}
+              disabled={!isOpen || fetcher.state !== 'idle'}
               className="button button-main max-sm:w-full"
             >
               Enter the reading
@@ -57,7 +57,7 @@ export function TypedEntry({ view }: { view: TypedBenchView }) {
             )}
           </div>
         </fieldset>
-        <AnswerLine reply={fetcher.data} fields={['volts', 'amps']} />
+        <AnswerLine reply={fetcher.data} fields={['volts', 'amps']} className="pt-2" />
       </fetcher.Form>
     </section>
   )
