@@ -1,4 +1,4 @@
-import { href, useFetcher } from 'react-router'
+import { href, Link, useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
 import type { BenchView, TypedBenchView } from '#app/benches/bench-view.server.ts'
 import { AnswerLine } from '../answer-line.tsx'
@@ -23,6 +23,11 @@ export function RunHeader({ view }: { view: BenchView | TypedBenchView }) {
         )}
       </h2>
       <div className="flex flex-wrap items-center justify-end gap-x-3">
+        {run && view.readings.length > 0 && (
+          <Link to={href('/runs/:runId/analysis', { runId: run.id })} className="link-alone">
+            Analysis of this run
+          </Link>
+        )}
         <fetcher.Form method="post" action={href('/benches/:benchId/runs', { benchId: view.bench.id })}>
           <button type="submit" className="button" disabled={fetcher.state !== 'idle'}>
             Start a new run
