@@ -3,6 +3,7 @@ const words: Record<string, string> = {
   anodeCorrection: 'verification of the anode meter',
   coilMeter: 'accuracy of the coil meter',
   scaleDistance: 'distance of the scale behind the beam',
+  rungDistance: 'distance of the rungs from the gun',
   fieldFactor: 'field factor of the coils',
   coilTurns: 'number of turns',
   coilRadius: 'radius of the coils',

@@ -29,7 +29,7 @@ export type ReadingView = {
   edges: Reads['edges']
   photos: Reads['photos']
   /** The rung that the beam met, on a bench that has them, and the diameter that it stands for. */
-  rung: (NonNullable<Reads['rung']> & { diameterMetres: number }) | null
+  rung: (NonNullable<Reads['rung']> & { diameterMetres: number; uDiameterMetres: number }) | null
   /** Null until someone has entered edges or a rung or measured a photo, and where the numbers give no orbit. */
   result: {
     chargeToMass: number
@@ -77,7 +77,10 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       coilStandardErrorAmps: uCoilAmps,
       edges: entries.edges,
       photos: entries.photos,
-      rung: entries.rung && rung ? { ...entries.rung, diameterMetres: rung.distanceMetres } : null,
+      rung:
+        entries.rung && rung
+          ? { ...entries.rung, diameterMetres: rung.distanceMetres, uDiameterMetres: rung.uDistanceMetres }
+          : null,
       result: workOut(reading, entries),
       struck,
     }

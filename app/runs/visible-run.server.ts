@@ -3,7 +3,7 @@ import { data } from 'react-router'
 import { may } from '../auth/capabilities.ts'
 import { visibleTo, type Watcher } from '../benches/visible-benches.server.ts'
 import type { Database, Transaction } from '../db/client.server.ts'
-import { benches, edges, people, photoMeasurements, photos, readings, runs } from '../db/schema.ts'
+import { benches, edges, people, photoMeasurements, photos, readings, rungs, runs } from '../db/schema.ts'
 
 export type VisibleRun = {
   id: string
@@ -31,6 +31,13 @@ export function runsOf(db: Database | Transaction, person: Watcher): SQL | undef
         .from(edges)
         .innerJoin(readings, eq(readings.id, edges.readingId))
         .where(and(eq(readings.runId, runs.id), eq(edges.personId, person.id))),
+    ),
+    exists(
+      db
+        .select(one)
+        .from(rungs)
+        .innerJoin(readings, eq(readings.id, rungs.readingId))
+        .where(and(eq(readings.runId, runs.id), eq(rungs.personId, person.id))),
     ),
     exists(
       db

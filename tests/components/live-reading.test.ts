@@ -52,6 +52,26 @@ describe('the live e/m', () => {
     expect(live(at(200, 1.53)).kind).toBe('none')
   })
 
+  it('rests on the rung of the newest reading where the bench has rungs, while the current stands', () => {
+    const rungs = { ...config, scale: { kind: 'rungs' as const, rungs: [], uDistanceMetres: 0.0002 } }
+    const rung = {
+      personId: 'p1',
+      name: 'Kofi Adeyemi',
+      rung: '8 cm',
+      settingHalfWidthAmps: 0.01,
+      diameterMetres: 0.08,
+      uDiameterMetres: 0.0002,
+    }
+    const readings = [readingView({ rung })]
+    const of = (changes: Partial<BenchState> = {}) =>
+      liveReading({ readings, state: liveState(changes), bench: readingBench(rungs), revision: 1 })
+    expect(of()).toMatchObject({ kind: 'result', source: 'rung', result: { diameterMetres: 0.08 } })
+    expect(of(at(200, 1.53))).toMatchObject({
+      kind: 'none',
+      sentence: expect.stringContaining('Meet a rung'),
+    })
+  })
+
   it('asks for new edges after a change of polarity or of the bench', () => {
     expect(live({ polarity: -1 }).kind).toBe('none')
     expect(liveReading({ readings: [read], state: liveState(), bench, revision: 2 }).kind).toBe('none')

@@ -5,7 +5,14 @@ import { edgesBy, readingView } from './bench-state.ts'
 const person = { id: 'p1', name: 'Kofi Adeyemi', role: 'student' } as const
 const mine = { personId: 'p1', name: 'Kofi Adeyemi', at: '2026-11-03T13:50:00.000Z' }
 const seen = { cautionsAcknowledged: true, ticked: [mine], readings: [], person }
-const rung = { personId: 'p2', name: 'p2', rung: '8 cm', settingHalfWidthAmps: null, diameterMetres: 0.08 }
+const rung = {
+  personId: 'p2',
+  name: 'p2',
+  rung: '8 cm',
+  settingHalfWidthAmps: null,
+  diameterMetres: 0.08,
+  uDiameterMetres: 0.0002,
+}
 const step = (changes: Partial<Parameters<typeof nextTypedStep>[0]>) =>
   nextTypedStep({ ...seen, ...changes }).name
 

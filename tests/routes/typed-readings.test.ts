@@ -14,6 +14,7 @@ import { action as enterEdges } from '#app/routes/benches/edges.ts'
 import { action as capture } from '#app/routes/benches/readings.ts'
 import { action as newRun } from '#app/routes/benches/runs.ts'
 import { action as type } from '#app/routes/benches/typed-readings.ts'
+import { loadAnalysis } from '#app/runs/analysis.server.ts'
 import { typeReading } from '#app/runs/typed.server.ts'
 import { type ClassSite, openClassSite, outcome } from '#tests/support/class-site.ts'
 import { formRequest, ownDatabaseUrl, routeArgs, routeContext } from '#tests/support/database.ts'
@@ -303,6 +304,32 @@ describe('A bench with rungs', () => {
       await enter(site.student, id, { rung: '6 cm', halfWidth: '' })
       await enter(site.partner, id, { rung: '8 cm', halfWidth: '0.01' })
       expect((await newest()).rung).toMatchObject({ rung: '8 cm', name: 'Runa Lindqvist' })
+    }))
+
+  it('can be analysed as a series, with what is its own in the current', () =>
+    withBench({ scale: rungs }, async () => {
+      await tickAll(site.student)
+      for (const [volts, amps, rung] of [
+        ['160', '1.36', '8 cm'],
+        ['160', '1.81', '6 cm'],
+        ['200', '1.52', '8 cm'],
+        ['240', '1.66', '8 cm'],
+      ] as const) {
+        await typeIn(site.student, { volts, amps })
+        await enter(site.student, (await newest()).id, { rung, halfWidth: '0.01' })
+      }
+      const runId = (await view()).run?.id ?? ''
+      const asked = { runId, line: 'intercept', method: 'both-errors' } as const
+      const analysis = await loadAnalysis(site.db, { ...asked, person: site.student })
+      expect(analysis.rows.map(({ leftOut }) => leftOut)).toEqual([null, null, null, null])
+      expect(analysis.stated?.standardUncertainty).toBeGreaterThan(0)
+      expect(analysis.budget.map(({ name }) => name)).toContain('distance of the rungs from the gun')
+      // Who only noted a rung took part in the run.
+      await expect(loadAnalysis(site.db, { ...asked, person: site.partner })).rejects.toMatchObject({
+        init: { status: 404 },
+      })
+      await enter(site.partner, (await newest()).id, { rung: '8 cm', halfWidth: '' })
+      expect((await loadAnalysis(site.db, { ...asked, person: site.partner })).rows).toHaveLength(4)
     }))
 
   it.each<[Fields, string]>([

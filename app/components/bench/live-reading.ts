@@ -1,5 +1,6 @@
 import {
   type BudgetBench,
+  type GivenDiameter,
   orbitMoved,
   pooledEdgeSpread,
   type ReadingResult,
@@ -11,18 +12,22 @@ import { readingWithDiameter } from './logbook-rows.ts'
 
 export type LiveReading =
   | { kind: 'none'; sentence: string }
-  | { kind: 'result'; number: number; source: 'edges' | 'photo'; result: ReadingResult }
+  | { kind: 'result'; number: number; source: 'edges' | 'photo' | 'rung'; result: ReadingResult }
 
 type Input = { readings: ReadingView[]; state: BenchState; bench: BudgetBench; revision: number }
 
 /**
- * e/m from the voltage and current of now with the edges or the photo of the last reading that has any, as long as the
- * orbit stands where it stood then. Otherwise what to do, in one sentence.
+ * e/m from the voltage and current of now with the edges, the photo or the rung of the last reading that has any, as long
+ * as the orbit stands where it stood then. Otherwise what to do, in one sentence.
  */
 export function liveReading({ readings, state, bench, revision }: Input): LiveReading {
   const none = (sentence: string): LiveReading => ({ kind: 'none', sentence })
   const reading = readingWithDiameter(readings)
-  if (!reading) return none('Capture a reading and read its two edges; then it stands here.')
+  const hasRungs = bench.scale.kind === 'rungs'
+  if (!reading)
+    return none(
+      `Capture a reading and ${hasRungs ? 'choose the rung that its beam meets' : 'read its two edges'}; then it stands here.`,
+    )
   if (state.phase !== 'live') return none('No beam: the anode is off.')
   const voltage = state.channels.anodeVolts
   const current = state.channels.coilAmps
@@ -33,7 +38,7 @@ export function liveReading({ readings, state, bench, revision }: Input): LiveRe
     current.mean === 0
   )
     return none('Waiting for the anode voltage and the coil current.')
-  const again = `Read the edges again: the orbit has moved since reading ${reading.number}.`
+  const again = `${hasRungs ? 'Meet a rung and capture' : 'Read the edges'} again: the orbit has moved since reading ${reading.number}.`
   if (reading.revision !== revision || reading.polarity !== state.polarity || state.polarityChanging)
     return none(again)
 
@@ -50,6 +55,7 @@ export function liveReading({ readings, state, bench, revision }: Input): LiveRe
       leftEdges,
       rightEdges,
       photos: reading.photos,
+      given: givenOf(reading),
       edgeSpread: pooledEdgeSpread(
         readings.filter(({ struck }) => !struck).map(({ edges, photos }) => [...edges, ...photos]),
       ),
@@ -64,11 +70,24 @@ export function liveReading({ readings, state, bench, revision }: Input): LiveRe
       resolutionMetres: resolutionOf(bench),
     })
     if (hasMoved) return none(again)
-    const source = reading.edges.length > 0 ? 'edges' : 'photo'
+    const source = reading.rung ? 'rung' : reading.edges.length > 0 ? 'edges' : 'photo'
     return { kind: 'result', number: reading.number, source, result }
   } catch (error) {
     if (!(error instanceof RangeError)) throw error
-    return none(`The edges of reading ${reading.number} give no orbit of this bench: read them again.`)
+    return none(
+      `${hasRungs ? 'Rung and current' : 'The edges'} of reading ${reading.number} give no orbit of this bench: read them again.`,
+    )
+  }
+}
+
+function givenOf({ rung }: ReadingView): GivenDiameter | undefined {
+  if (!rung) return undefined
+  const { diameterMetres, uDiameterMetres, settingHalfWidthAmps } = rung
+  return {
+    source: 'rung',
+    diameterMetres,
+    uDiameterMetres,
+    settingHalfWidthAmps: settingHalfWidthAmps ?? 0,
   }
 }
 

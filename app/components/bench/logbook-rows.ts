@@ -10,11 +10,11 @@ export function readingWithDiameter(readings: ReadingView[]): ReadingView | null
   return newestFirst(readings).find((reading) => !reading.struck && isRead(reading)) ?? null
 }
 
-const isRead = ({ edges, photos }: ReadingView) => edges.length + photos.length > 0
+const isRead = ({ edges, photos, rung }: ReadingView) => rung !== null || edges.length + photos.length > 0
 
-/** Whether this person has read the beam of a reading, at its edges or off a photo. */
-export const isReadBy = ({ edges, photos }: ReadingView, personId: string) =>
-  [...edges, ...photos].some((read) => read.personId === personId)
+/** Whether this person has read the beam of a reading, at its edges or off a photo. A rung is the beam's, whoever noted it. */
+export const isReadBy = ({ edges, photos, rung }: ReadingView, personId: string) =>
+  rung !== null || [...edges, ...photos].some((read) => read.personId === personId)
 
 export const oldestFirst = (readings: ReadingView[]) => readings.toSorted((a, b) => a.number - b.number)
 const newestFirst = (readings: ReadingView[]) => readings.toSorted((a, b) => b.number - a.number)

@@ -1,5 +1,5 @@
-import type { ReadingView, TypedBenchView } from '#app/benches/bench-view.server.ts'
-import { readingToRead } from './logbook-rows.ts'
+import type { TypedBenchView } from '#app/benches/bench-view.server.ts'
+import { isReadBy, readingToRead } from './logbook-rows.ts'
 
 export const typedStepNames = [
   'Acknowledge the cautions',
@@ -14,11 +14,6 @@ type Seen = Pick<TypedBenchView, 'cautionsAcknowledged' | 'ticked' | 'readings' 
 /** Whether this person has ticked the checklist for the run. */
 export const hasTicked = ({ ticked, person }: Pick<Seen, 'ticked' | 'person'>): boolean =>
   ticked.some(({ personId }) => personId === person.id)
-
-/** Whether this person has read the beam of a reading; a rung is of the beam, whoever noted it. */
-function isReadBy({ edges, photos, rung }: ReadingView, personId: string): boolean {
-  return rung !== null || [...edges, ...photos].some((read) => read.personId === personId)
-}
 
 /** The one thing to do next at a bench without ports, and why. */
 export function nextTypedStep(view: Seen): Step {
