@@ -113,6 +113,7 @@ describe('The directions of imports', () => {
       'app/auth',
       'app/db',
       'app/mail',
+      'app/files',
     ]
     const wrong = all.filter(
       ({ from, to }) =>

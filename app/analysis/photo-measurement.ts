@@ -1,6 +1,7 @@
 import { effectiveDegreesOfFreedom } from '#app/metrology/coverage.ts'
 import { fitCircle } from '#app/statistics/circle-fit.ts'
 import { requireFinite } from '#app/statistics/domain.ts'
+import { checkEllipse } from './ellipse-check.ts'
 import { type PhotoScale, photoScale, type ScaleMark } from './photo-scale.ts'
 import type { PhotoDiameter } from './reading-types.ts'
 
@@ -18,11 +19,19 @@ export type PhotoMeasurement = PhotoDiameter & {
   /** part of the circle from the first point to the last, past the largest gap between two */
   arcDegrees: number
   isShortArc: boolean
+  /**
+   * where the points follow an ellipse beyond chance: how much longer its longest diameter is than its shortest, metres on
+   * the scale; else null
+   */
+  ellipseMetres: number | null
 }
 
 /** Below this a pixel more or less at one point moves the radius by many. */
 const leastArcDegrees = 20
 const shortArcDegrees = 180
+/** An ellipse by chance once in a hundred photos; one that is rounder than this moves the diameter by too little. */
+const ellipseChance = 0.01
+const leastEllipse = 0.005
 
 /**
  * The diameter of a beam from points on a photo: the circle that fits them best by geometric distance, over the scale
@@ -52,12 +61,15 @@ export function measurePhoto({
     requireFinite(`points[${i}].x`, x)
     requireFinite(`points[${i}].y`, y)
   })
-  const { centreX, centreY, radius, radiusError } = fitCircle(points)
+  const { centreX, centreY, radius, radiusError, residuals, arcRadians } = fitCircle(points)
   const angles = points.map(({ x, y }) => Math.atan2(y - centreY, x - centreX))
-  const arcDegrees = arcOf(angles)
+  const arcDegrees = (arcRadians * 180) / Math.PI
   if (arcDegrees < leastArcDegrees)
     throw new RangeError(`points must cover ${leastArcDegrees}° of the circle, got ${arcDegrees.toFixed(1)}°`)
 
+  const ellipse = checkEllipse(residuals, angles)
+  const isEllipse =
+    ellipse !== null && ellipse.p < ellipseChance && ellipse.axesDifference > leastEllipse * 2 * radius
   const metres = (pixels: number) => pixels / scale.pixelsPerMetre
   const diameterMetres = metres(2 * radius)
   const parts = [radiusError ?? 0, scale.uPointingPixels * Math.sqrt(radiusVariance(angles))]
@@ -77,20 +89,11 @@ export function measurePhoto({
     uDiameterMetres: Math.hypot(uCircleMetres, uScaleMetres),
     circle: { centreX, centreY, radius },
     scale,
-    residualsMetres: points.map(({ x, y }) => metres(Math.hypot(x - centreX, y - centreY) - radius)),
+    residualsMetres: residuals.map(metres),
     arcDegrees,
     isShortArc: arcDegrees < shortArcDegrees,
+    ellipseMetres: isEllipse ? metres(ellipse.axesDifference) : null,
   }
-}
-
-/** What the largest gap between neighbours leaves of the full circle, in degrees. */
-function arcOf(angles: readonly number[]): number {
-  const sorted = angles.toSorted((a, b) => a - b)
-  const gaps = sorted.map((angle, i) => {
-    const next = sorted[i + 1]
-    return next === undefined ? (sorted[0] as number) + 2 * Math.PI - angle : next - angle
-  })
-  return 360 - (Math.max(...gaps) * 180) / Math.PI
 }
 
 /** Variance of the radius for a unit variance of each point's distance: the last element of (JᵀJ)⁻¹, J's rows (−cos φ, −sin φ, −1). */

@@ -108,6 +108,10 @@ export function doubts({ measurement, scaleMarks }: Measured, scale: Scale): str
     sentences.push(
       `The points cover only ${Math.round(measurement.arcDegrees)}° of the circle. Mark points all around it: the diameter becomes far more certain.`,
     )
+  if (measurement.ellipseMetres !== null)
+    sentences.push(
+      `The points lie on an ellipse, whose diameters differ by ${(measurement.ellipseMetres * 1000).toFixed(1)} mm: the camera looked from aside. Take the photo straight from the front.`,
+    )
   const { residualsMetres } = measurement.scale
   const worst = residualsMetres.indexOf(Math.max(...residualsMetres))
   const off = residualsMetres[worst] ?? 0

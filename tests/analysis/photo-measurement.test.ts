@@ -1,7 +1,9 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
+import { checkEllipse } from '#app/analysis/ellipse-check.ts'
 import { measurePhoto, type PhotoPoint, type ScaleMark } from '#app/analysis/photo-measurement.ts'
 import { photoScale } from '#app/analysis/photo-scale.ts'
+import { fitCircle } from '#app/statistics/circle-fit.ts'
 import { moments } from '#app/statistics/moments.ts'
 import { expectNear } from '#tests/support/near.ts'
 import { gaussian } from './random.ts'
@@ -176,6 +178,49 @@ describe('the diameter off a photo', () => {
     expect(of([0, 60, 120, 179]).isShortArc).toBe(true)
     expect(of([0, 60, 120, 181]).isShortArc).toBe(false)
   })
+})
+
+describe('an ellipse', () => {
+  const drawn = picture()
+  /** A camera that looks from aside shortens what lies along its tilt: here to 0.98. */
+  const aside = ({ x, y }: PhotoPoint) => ({ x: 900 + (x - 900) * 0.98, y })
+  const many = Array.from({ length: 14 }, (_, i) => 25 * i)
+  const of = (points: PhotoPoint[]) =>
+    measurePhoto({ scaleMarks: drawn.scaleMarks([0, 12]), points, graduationMetres }).ellipseMetres
+
+  it('is told from a circle by its points, with how much its diameters differ', () => {
+    expectNear(of(drawn.points(many).map(aside)) ?? 0, 0.02 * 0.078, { rel: 0.02 })
+    expectNear(of(drawn.points([0, 70, 130, 150, 200, 265, 300]).map(aside)) ?? 0, 0.02 * 0.078, {
+      rel: 0.05,
+    })
+  })
+
+  it('is not seen in a circle whose points lie a pixel beside it, but once in some hundred', () => {
+    const normal = gaussian(11)
+    const beside = ({ x, y }: PhotoPoint) => ({ x: x + normal(), y: y + normal() })
+    const seen = Array.from({ length: 300 }, () =>
+      checkEllipse(...offsOf(drawn.points(many).map(beside))),
+    ).filter((check) => (check?.p ?? 1) < 0.01)
+    // Binomial, 300 trials of 0.01: more than 9 come up once in a thousand.
+    expect(seen.length).toBeLessThanOrEqual(9)
+    expect(of(drawn.points(many).map(beside))).toBeNull()
+  })
+
+  it('that is rounder than half a percent moves the diameter too little to be named', () => {
+    expect(of(drawn.points(many).map(({ x, y }) => ({ x: 900 + (x - 900) * 0.997, y })))).toBeNull()
+  })
+
+  it('is not looked for in fewer than seven points, nor found where there is no scatter at all', () => {
+    expect(of(drawn.points([0, 60, 120, 180, 240, 300]).map(aside))).toBeNull()
+    expect(checkEllipse(Array(8).fill(0), [0, 1, 2, 3, 4, 5, 6, 6.1])).toEqual({ axesDifference: 0, p: 1 })
+    expect(() => checkEllipse([1, 2], [1])).toThrow('angles')
+    expect(() => checkEllipse([Number.NaN], [1])).toThrow('residuals[0]')
+  })
+
+  function offsOf(points: PhotoPoint[]): [residuals: number[], angles: number[]] {
+    const { centreX, centreY, residuals } = fitCircle(points)
+    return [residuals, points.map(({ x, y }) => Math.atan2(y - centreY, x - centreX))]
+  }
 })
 
 describe('marks that give no diameter', () => {

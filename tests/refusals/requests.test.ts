@@ -117,6 +117,28 @@ describe('A request that cannot be read', () => {
     }
   })
 
+  it('is let through as long as a photo is to where photos are sent, and there alone', async () => {
+    const long = (bytes: number) => new Blob([new Uint8Array(bytes)])
+    const statusOf = async (path: string, body: Blob) => {
+      const headers = { 'Content-Type': 'multipart/form-data; boundary=y' }
+      return (await ask(path, { method: 'POST', body, headers })).status
+    }
+    for (const path of [
+      '/benches/bench-1/readings/none/photo',
+      '/benches/bench-1/readings/none/photo.data',
+    ]) {
+      // There is no such reading, which is found out before the body is read.
+      expect(await statusOf(path, long(1_000_000)), path).toBe(404)
+      expect(await statusOf(path, long(25_000_000)), path).toBe(413)
+    }
+    for (const path of [
+      '/benches/bench-1/readings/none/edges',
+      '/benches/bench-1/readings/none/photos/none/measurements',
+      '/benches/bench-1/readings/none/photo/more',
+    ])
+      expect(await statusOf(path, long(100_000)), path).toBe(413)
+  })
+
   it('by a method that no route takes is refused without a fault', async () => {
     const printed = vi.spyOn(console, 'error').mockImplementation(() => {})
     expect((await ask('/hall', { method: 'OPTIONS' })).status).toBe(405)

@@ -73,6 +73,19 @@ describe('Marks on a photo', () => {
   })
 })
 
+describe('A beam seen from aside', () => {
+  it('is doubted, with how much the diameters of the ellipse differ', () => {
+    const points = around(0, 50, 100, 150, 200, 250, 300, 330).map(({ x, y }) => ({
+      x: 700 + (x - 700) * 0.96,
+      y,
+    }))
+    const { measured } = measure({ points })
+    expect(measured && doubts(measured, scale)).toEqual([
+      expect.stringMatching(/^The points lie on an ellipse, whose diameters differ by 3\.\d mm: /),
+    ])
+  })
+})
+
 describe('The number of a scale mark', () => {
   it.each([
     ['7.35', 0.0735],

@@ -32,12 +32,15 @@ export function PhotoMeasuring({ view, photo }: Props) {
   const fetcher = useFetcher<ActionReply>()
   const isFixed = reading.struck !== null
   // On a real bench in a dark room the tube alone may glow.
-  const beam = view.isVirtual ? 'text-beam' : 'text-beam dark:text-ink'
+  const beam = view.isVirtual ? 'text-beam' : 'text-beam in-[html[data-light=dark]]:text-ink'
   const ids = { benchId: bench.id, readingId: reading.id, photoId: photo.id }
   const lists = { marks, dispatch, measurement: measured?.measurement ?? null, isFixed }
 
   return (
-    <div className="grid grid-cols-[minmax(0,1fr)] gap-x-8 gap-y-5 lg:grid-cols-[minmax(0,1fr)_minmax(20rem,26rem)]">
+    <div
+      className="grid grid-cols-[minmax(0,var(--photo))] gap-x-8 gap-y-5 lg:grid-cols-[minmax(0,var(--photo))_minmax(20rem,26rem)]"
+      style={{ '--photo': `calc(78dvh * ${width / height})` } as React.CSSProperties}
+    >
       <div className="grid min-w-0 content-start gap-2">
         {!isFixed && <Placing marks={marks} dispatch={dispatch} words={edgeWords[view.edges]} />}
         <PhotoSight
@@ -94,7 +97,7 @@ function Placing({ marks, dispatch, words }: PlacingProps) {
         name="placing"
         checked={marks.placing === kind}
         onChange={() => dispatch({ do: 'set', placing: kind })}
-        className="size-4"
+        className="size-4 appearance-none rounded-full border border-edge bg-surface checked:border-5 checked:border-ink"
       />
       {label}
     </label>
@@ -110,8 +113,10 @@ function Placing({ marks, dispatch, words }: PlacingProps) {
         {marks.placing === 'scale'
           ? 'Mark two or more lines of the scale, far apart, and type what each reads.'
           : `Mark points along ${words}, all around it.`}{' '}
-        Drag a mark to move it, or the photo beside it; two fingers or Ctrl with the wheel enlarge. Arrow keys
-        move the chosen mark, with Shift finely; + and − enlarge, Delete removes.
+        Drag a mark to move it, or the photo beside it; two fingers, or Ctrl with the wheel, enlarge.{' '}
+        <span className="touch:hidden">
+          Arrow keys move the chosen mark, with Shift finely; + and − enlarge, Delete removes.
+        </span>
       </p>
     </div>
   )

@@ -37,7 +37,7 @@ export function PhotoSight({ photo, picture, words, marks, dispatch, measurement
   const { view } = sight
   const selected = marks.all.find((mark) => mark.id === marks.selectedId)
   const step = view.width * nudgePart
-  const seen = `${photo.width} / ${photo.height}`
+  const box = `${view.x} ${view.y} ${view.width} ${heightOf(view, photo)}`
 
   function nudge(markId: number, by: Place, isFine: boolean) {
     const size = isFine ? step / 10 : step
@@ -69,7 +69,7 @@ export function PhotoSight({ photo, picture, words, marks, dispatch, measurement
         role="application"
         aria-label="The photo with its marks"
         className="group relative w-full touch-none overflow-hidden rounded-md border border-rule bg-glass select-none"
-        style={{ aspectRatio: seen, maxWidth: `calc(72dvh * ${photo.width / photo.height})` }}
+        style={{ aspectRatio: `${photo.width} / ${photo.height}` }}
         onMouseDown={(event) => event.preventDefault()}
         onPointerDown={sight.onPointerDown}
         onPointerMove={sight.onPointerMove}
@@ -81,7 +81,7 @@ export function PhotoSight({ photo, picture, words, marks, dispatch, measurement
         onPointerCancel={sight.endOf}
       >
         <svg
-          viewBox={`${view.x} ${view.y} ${view.width} ${heightOf(view, photo)}`}
+          viewBox={box}
           preserveAspectRatio="none"
           className="block size-full"
           role="img"
@@ -93,25 +93,31 @@ export function PhotoSight({ photo, picture, words, marks, dispatch, measurement
             height={photo.height}
             className="dark:brightness-45 group-focus-within:brightness-100 group-hover:brightness-100"
           />
-          {measurement && <FittedCircle marks={marks} measurement={measurement} beam={beam} />}
         </svg>
-        {marks.all.map((mark) => (
-          <MarkButton
-            key={mark.id}
-            elementId={markElementId(id, mark.id)}
-            mark={mark}
-            name={nameOf(marks, mark)}
-            left={(mark.x - view.x) / view.width}
-            top={(mark.y - view.y) / heightOf(view, photo)}
-            isSelected={mark.id === marks.selectedId}
-            beam={beam}
-            onSelect={() => {
-              dispatch({ do: 'select', id: mark.id })
-              sight.show(mark)
-            }}
-            onKeyDown={(event) => onKeyDown(event, mark.id)}
-          />
-        ))}
+        <div data-light="dark" className="on-photo absolute inset-0 text-ink">
+          {measurement && (
+            <svg viewBox={box} preserveAspectRatio="none" className="block size-full" aria-hidden="true">
+              <FittedCircle marks={marks} measurement={measurement} beam={beam} />
+            </svg>
+          )}
+          {marks.all.map((mark) => (
+            <MarkButton
+              key={mark.id}
+              elementId={markElementId(id, mark.id)}
+              mark={mark}
+              name={nameOf(marks, mark)}
+              left={(mark.x - view.x) / view.width}
+              top={(mark.y - view.y) / heightOf(view, photo)}
+              isSelected={mark.id === marks.selectedId}
+              beam={beam}
+              onSelect={() => {
+                dispatch({ do: 'select', id: mark.id })
+                sight.show(mark)
+              }}
+              onKeyDown={(event) => onKeyDown(event, mark.id)}
+            />
+          ))}
+        </div>
       </div>
       <div className="flex flex-wrap items-center gap-2">
         {selected && !isFixed && (

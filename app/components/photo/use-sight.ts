@@ -23,6 +23,12 @@ type Gesture =
 const distanceOf = (a: Place, b: Place) => Math.hypot(a.x - b.x, a.y - b.y)
 const betweenOf = (a: Place, b: Place): Place => ({ x: (a.x + b.x) / 2, y: (a.y + b.y) / 2 })
 
+/** A place on the screen as one on the photo. */
+function placeOf(client: Place, view: ViewBox, box: DOMRect): Place {
+  const pixels = view.width / box.width
+  return { x: view.x + (client.x - box.left) * pixels, y: view.y + (client.y - box.top) * pixels }
+}
+
 /**
  * What is seen of a photo, and what fingers, mouse and wheel do to it: a tap sets a mark, a drag moves the photo or the mark
  * under it, two fingers or Ctrl with the wheel enlarge.
@@ -33,14 +39,7 @@ export function useSight(photo: Size, marks: readonly Mark[], dispatch: Dispatch
   const pointers = useRef(new Map<number, Place>())
   const gesture = useRef<Gesture | null>(null)
 
-  /** A place on the screen as one on the photo. */
-  function placeOf(client: Place, of: ViewBox = view): Place {
-    const box = frame.current?.getBoundingClientRect()
-    if (!box) return middleOf(of, photo)
-    const pixels = of.width / box.width
-    return { x: of.x + (client.x - box.left) * pixels, y: of.y + (client.y - box.top) * pixels }
-  }
-  const pixelsPerScreen = () => view.width / (frame.current?.clientWidth || 1)
+  const boxOf = () => frame.current?.getBoundingClientRect() ?? new DOMRect(0, 0, 1, 1)
 
   function zoomBy(factor: number, at: Place = middleOf(view, photo)) {
     setView((now) => zoomed(now, photo, factor, at))
@@ -54,14 +53,8 @@ export function useSight(photo: Size, marks: readonly Mark[], dispatch: Dispatch
       if (!event.ctrlKey && !event.metaKey) return
       event.preventDefault()
       const box = element.getBoundingClientRect()
-      setView((now) => {
-        const pixels = now.width / box.width
-        const at = {
-          x: now.x + (event.clientX - box.left) * pixels,
-          y: now.y + (event.clientY - box.top) * pixels,
-        }
-        return zoomed(now, photo, Math.exp(-event.deltaY / 300), at)
-      })
+      const client = { x: event.clientX, y: event.clientY }
+      setView((now) => zoomed(now, photo, Math.exp(-event.deltaY / 300), placeOf(client, now, box)))
     }
     element.addEventListener('wheel', onWheel, { passive: false })
     return () => element.removeEventListener('wheel', onWheel)
@@ -94,25 +87,31 @@ export function useSight(photo: Size, marks: readonly Mark[], dispatch: Dispatch
     if (!now || !pointers.current.has(event.pointerId)) return
     const client = { x: event.clientX, y: event.clientY }
     pointers.current.set(event.pointerId, client)
-    const pixels = pixelsPerScreen()
+    const box = boxOf()
     if (now.kind === 'pinch') {
       const [first, second] = [...pointers.current.values()]
       if (!first || !second) return
       const [distance, middle] = [distanceOf(first, second), betweenOf(first, second)]
-      const at = placeOf(now.middle)
-      const larger = zoomed(view, photo, distance / Math.max(1, now.distance), at)
-      const to = placeOf(middle, larger)
-      setView(shifted(larger, photo, { x: at.x - to.x, y: at.y - to.y }))
+      // From the view as it is by then: several moves may come before it is drawn.
+      setView((old) => {
+        const at = placeOf(now.middle, old, box)
+        const larger = zoomed(old, photo, distance / Math.max(1, now.distance), at)
+        const to = placeOf(middle, larger, box)
+        return shifted(larger, photo, { x: at.x - to.x, y: at.y - to.y })
+      })
       gesture.current = { kind: 'pinch', distance, middle }
     } else if (now.kind === 'pan') {
-      const by = { x: (now.last.x - client.x) * pixels, y: (now.last.y - client.y) * pixels }
-      setView((old) => shifted(old, photo, by))
+      setView((old) => {
+        const [from, to] = [placeOf(client, old, box), placeOf(now.last, old, box)]
+        return shifted(old, photo, { x: to.x - from.x, y: to.y - from.y })
+      })
       gesture.current = { kind: 'pan', last: client }
     } else if (distanceOf(client, now.start) > tapPixels || (now.kind === 'drag' && now.isMoved)) {
       if (now.kind === 'tap') gesture.current = { kind: 'pan', last: client }
       else {
         gesture.current = { ...now, isMoved: true }
         // From where the mark was, so that a finger beside it does not make it jump.
+        const pixels = view.width / box.width
         const x = now.mark.x + (client.x - now.start.x) * pixels
         const y = now.mark.y + (client.y - now.start.y) * pixels
         dispatch({ do: 'move', id: now.mark.id, x, y })
@@ -133,7 +132,7 @@ export function useSight(photo: Size, marks: readonly Mark[], dispatch: Dispatch
     const isLifted = event.type === 'pointerup'
     const client = { x: event.clientX, y: event.clientY }
     return {
-      placed: isLifted && now?.kind === 'tap' ? placeOf(client) : null,
+      placed: isLifted && now?.kind === 'tap' ? placeOf(client, view, boxOf()) : null,
       selectedId: isLifted && now?.kind === 'drag' ? now.mark.id : null,
     }
   }
