@@ -1,4 +1,3 @@
-import type { PlotLine, PlotPoint } from '../charts/static/series-plot.tsx'
 import type { Fit, LineKind, Method } from './fits.ts'
 import type { MonteCarloProblem } from './monte-carlo.ts'
 import type { PlannedSetting } from './plan.server.ts'
@@ -94,8 +93,19 @@ export type AnalysisView = {
   plot: {
     line: LineKind
     method: Method
-    points: PlotPoint[]
-    curve: PlotLine
+    points: {
+      key: string
+      label: string
+      x: number
+      y: number
+      ux: number
+      uy: number
+      /** in units of its uncertainty */
+      residual: number | null
+      isFlagged: boolean
+    }[]
+    /** the line at places ascending in x, with the bounds of its confidence band */
+    curve: { x: number; y: number; low: number; high: number }[]
     x: { label: string; name: string }
     y: { label: string; name: string }
     caption: string
