@@ -145,19 +145,28 @@ export function statedResult(
   }
 }
 
-/** The effects of the general model, and how each moves e/m when it is taken in. */
+/** The effects in the general model, and what each would be alone. */
 export function effectRows({ general, subsets }: Diagnosis): EffectRow[] {
   const none = subsets.find((subset) => subset.effects.length === 0)
   return effects.map((effect) => {
     const alone = subsets.find((subset) => subset.effects.join() === effect)
-    const size = general.sizes[effect] as Prior
+    const inItsUnit = ({ value, standardUncertainty }: Prior) => ({
+      value: inUnit(effect, value),
+      standardUncertainty: inUnit(effect, standardUncertainty),
+    })
+    const size = alone?.sizes[effect]
     return {
       name: effectWords[effect],
       unit: effectUnit(effect),
-      value: inUnit(effect, size.value),
-      standardUncertainty: inUnit(effect, size.standardUncertainty),
-      change: none && alone ? alone.chargeToMass / none.chargeToMass - 1 : null,
-      isPlausible: isPlausible(effect, alone?.sizes[effect] ?? size),
+      ...inItsUnit(general.sizes[effect] as Prior),
+      alone:
+        none && alone && size
+          ? {
+              ...inItsUnit(size),
+              change: alone.chargeToMass / none.chargeToMass - 1,
+              isPlausible: isPlausible(effect, size),
+            }
+          : null,
     }
   })
 }

@@ -44,12 +44,12 @@ export type StatedResult = Estimate & {
   independentUncertainty: number
 }
 
+/** One effect, in its unit. */
 export type EffectRow = Estimate & {
   name: string
   unit: string
-  /** How much e/m moves when this effect is taken in, relative to the fit without it. */
-  change: number | null
-  isPlausible: boolean
+  /** What it would have to be were it the only one, and how much e/m then moves; null where the readings do not say. */
+  alone: (Estimate & { change: number; isPlausible: boolean }) | null
 }
 
 export type SubsetRow = {

@@ -6,13 +6,13 @@ import { Heads, ScrollTable } from './section.tsx'
 export function Budget({ rows }: { rows: BudgetRow[] }) {
   const largest = Math.max(...rows.map(({ relative }) => relative), 0)
   return (
-    <div className="grid gap-3">
+    <div className="grid grid-cols-1 gap-3">
       {[true, false].map((isCommon) => {
         const part = rows.filter((row) => row.isCommon === isCommon).sort((a, b) => b.relative - a.relative)
         if (part.length === 0) return null
         const total = Math.hypot(...part.map(({ relative }) => relative))
         return (
-          <div key={String(isCommon)} className="grid gap-1">
+          <div key={String(isCommon)} className="grid grid-cols-1 gap-1">
             <h3 className="font-medium">
               {isCommon ? 'Shared by all readings' : "Each reading's own"}{' '}
               <span className="font-normal text-ink-soft">

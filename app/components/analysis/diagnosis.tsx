@@ -18,11 +18,11 @@ export function Diagnosis({ view }: { view: AnalysisView }) {
     )
   const { finding, effects, subsets, notApart, unseen, checks } = diagnosis
   return (
-    <div className="grid gap-4">
+    <div className="grid grid-cols-1 gap-4">
       <Sentences sentences={finding} className="text-[15px]" />
       {checks.length > 0 && <List title="What to check at the bench" sentences={checks} />}
       <ScrollTable label="Effects in the general model">
-        <Heads names={['effect', 'size', 'moves e/m by', 'of a size that occurs']} />
+        <Heads names={['effect', 'in the general model', 'were it the only one', 'e/m would then move by']} />
         <tbody>
           {effects.map((effect) => (
             <tr key={effect.name} className="border-b border-rule">
@@ -32,8 +32,11 @@ export function Diagnosis({ view }: { view: AnalysisView }) {
               <td className={cell}>
                 {estimate(effect)} {effect.unit}
               </td>
-              <td className={cell}>{effect.change === null ? '—' : percent(effect.change)}</td>
-              <td className={cell}>{effect.isPlausible ? 'yes' : 'no: far too large'}</td>
+              <td className={cell}>
+                {effect.alone ? `${estimate(effect.alone)} ${effect.unit}` : '—'}
+                {effect.alone && !effect.alone.isPlausible && ', far too large'}
+              </td>
+              <td className={cell}>{effect.alone ? percent(effect.alone.change) : '—'}</td>
             </tr>
           ))}
         </tbody>

@@ -16,7 +16,7 @@ export function Statement({ view }: { view: AnalysisView }) {
       </p>
     )
   return (
-    <div className="grid gap-2">
+    <div className="grid grid-cols-1 gap-2">
       <p className="text-[26px] leading-tight font-bold text-beam sm:text-[32px]">
         {inElevens(stated)} <span className="whitespace-nowrap">× 10¹¹ C/kg</span>
       </p>

@@ -32,7 +32,7 @@ export default function Analysis({ loaderData: { view, person } }: Route.Compone
   return (
     <BenchFrame bench={run.bench} person={person}>
       <title>{`Analysis · ${run.bench.name} · Coilside`}</title>
-      <div className={`grid max-w-7xl gap-6 ${view.isRealBench ? 'dark:[--beam:var(--ink)]' : ''}`}>
+      <div className={`grid max-w-7xl grid-cols-1 gap-6 ${view.isRealBench ? 'dark:[--beam:var(--ink)]' : ''}`}>
         <header className="grid gap-1">
           <h1 className="text-xl font-bold">Analysis of a run</h1>
           <p className="text-ink-soft">
@@ -53,7 +53,7 @@ export default function Analysis({ loaderData: { view, person } }: Route.Compone
         </Section>
         {plot && (
           <Section id="fits" title="Lines through the readings">
-            <div className="grid items-start gap-6 xl:grid-cols-[minmax(0,5fr)_minmax(0,6fr)]">
+            <div className="grid grid-cols-1 items-start gap-6 xl:grid-cols-[minmax(0,5fr)_minmax(0,6fr)]">
               <SeriesPlot
                 key={`${plot.line} ${plot.method}`}
                 points={plot.points}
