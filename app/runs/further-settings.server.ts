@@ -1,5 +1,5 @@
 import type { Diagnosis } from '../analysis/diagnosis.ts'
-import { chooseSettings, predictGrid } from '../analysis/planning.ts'
+import { chooseSettings, type Prediction, predictGrid } from '../analysis/planning.ts'
 import type { SeriesField } from '../analysis/series-model.ts'
 import type { CommissionedBench } from '../protocol/bench-config.ts'
 import type { Entry } from './analysis.server.ts'
@@ -66,26 +66,31 @@ export function furtherSettings({
     },
   }
   try {
-    const chosen = chooseSettings(bench, {
-      candidates: predictGrid(bench, settingGrid(config)),
-      count,
-      criterion: 'all',
-      taken,
-    })
-    return chosen
-      .filter((setting, i) => chosen.findIndex((other) => isSame(other, setting)) === i)
-      .map(({ anodeVolts, coilAmps, polarity, radiusMetres }) => ({
+    let candidates = predictGrid(bench, settingGrid(config))
+    const known = [...taken]
+    return Array.from({ length: count }, () => {
+      const [best] = chooseSettings(bench, { candidates, count: 1, criterion: 'all', taken: known }) as [
+        Prediction,
+      ]
+      const { anodeVolts, coilAmps, polarity, radiusMetres } = best
+      // The same setting again would tell less than another of its kind, and teach less.
+      candidates = candidates.filter((candidate) => candidate !== best)
+      known.push({
+        voltageVolts: anodeVolts,
+        currentAmps: coilAmps,
+        diameterMetres: 2 * radiusMetres,
+        polarity,
+        ...bench.uncertainties,
+      })
+      return {
         anodeVolts,
         coilAmps,
         polarity,
         why: `an orbit of about ${Math.round(radiusMetres * 200)} cm across`,
-      }))
+      }
+    })
   } catch (error) {
     if (error instanceof RangeError) return []
     throw error
   }
 }
-
-type Setting = Pick<FurtherSetting, 'anodeVolts' | 'coilAmps' | 'polarity'>
-const isSame = (a: Setting, b: Setting): boolean =>
-  a.anodeVolts === b.anodeVolts && a.coilAmps === b.coilAmps && a.polarity === b.polarity

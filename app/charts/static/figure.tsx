@@ -20,7 +20,7 @@ export function Figure({ description, caption, width, height, fileName, table, c
   const svg = useRef<SVGSVGElement>(null)
   const save = (how: typeof saveSvg | typeof savePng) => () => svg.current && how(svg.current, fileName)
   return (
-    <figure className="grid min-w-0 content-start gap-1">
+    <figure className="grid min-w-0 grid-cols-1 content-start gap-1">
       <svg
         ref={svg}
         viewBox={`0 0 ${width} ${height}`}

@@ -52,7 +52,7 @@ export function SeriesPlot({ points, line, x, y, caption, fileName }: Props) {
   const point = points.find(({ key }) => key === chosen) ?? null
 
   return (
-    <div className="grid min-w-0 content-start gap-1">
+    <div className="grid min-w-0 grid-cols-1 content-start gap-1">
       <Figure
         {...size}
         description={`${y.name} against ${x.name} of ${points.length} readings with their uncertainties, the fitted line and its residuals`}

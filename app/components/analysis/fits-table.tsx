@@ -28,7 +28,7 @@ export function FitsTable({ fits, plot }: Pick<AnalysisView, 'fits' | 'plot'>) {
                     {lineWords[line]}
                   </Link>
                 </th>
-                <td className={`${cell} text-left whitespace-normal`}>{methodWords[method]}</td>
+                <td className={`${cell} min-w-44 text-left whitespace-normal`}>{methodWords[method]}</td>
                 <td className={`${cell} text-beam`}>{inElevens(chargeToMass)}</td>
                 <td className={cell}>{second && `${second.name} ${estimate(second)} ${second.unit}`}</td>
                 <td className={cell}>{chiSquared.toPrecision(3)}</td>

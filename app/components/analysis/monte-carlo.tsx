@@ -22,9 +22,9 @@ export function MonteCarlo({ problem, runNumber }: { problem: MonteCarloProblem;
   return (
     <div className="grid max-w-prose gap-2">
       <p className="text-ink-soft">
-        The budget above is worked out to first order. Here every input is drawn from its own distribution and
-        the mean e/m of the readings worked out from it, until mean, uncertainty and interval stand to two
-        digits (JCGM 101).
+        The budget above is worked out to first order. Here every input of the readings is drawn from its own
+        distribution and their mean e/m worked out, as if there were no stray field and no offset, until mean,
+        uncertainty and interval stand to two digits (JCGM 101).
       </p>
       <div className="flex flex-wrap items-center gap-3">
         <button type="button" className="button" onClick={start} disabled={isRunning}>

@@ -1,7 +1,10 @@
 /** One part of the analysis under its heading. */
 export function Section({ id, title, children }: { id: string; title: string; children: React.ReactNode }) {
   return (
-    <section aria-labelledby={id} className="grid min-w-0 grid-cols-1 content-start gap-3 border-t border-ink pt-3">
+    <section
+      aria-labelledby={id}
+      className="grid min-w-0 grid-cols-1 content-start gap-3 border-t border-ink pt-3"
+    >
       <h2 id={id} className="text-[17px] font-bold">
         {title}
       </h2>
