@@ -42,7 +42,10 @@ export function Figure({ description, caption, width, height, fileName, table, c
       <div className="flex flex-wrap items-start gap-x-5 gap-y-1 text-[12.5px] text-ink-soft">
         <details className="min-w-0 open:w-full">
           <summary className="w-fit cursor-pointer touch:py-3.5">as a table</summary>
-          <div className="overflow-x-auto py-1">{table}</div>
+          {/* biome-ignore lint/a11y/noNoninteractiveTabindex: what scrolls must be reached by keyboard */}
+          <section aria-label="Numbers of the plot" tabIndex={0} className="overflow-x-auto py-1">
+            {table}
+          </section>
         </details>
         <button type="button" className="link-alone" onClick={save(saveSvg)}>
           save as SVG
