@@ -1,0 +1,100 @@
+import { mkdirSync } from 'node:fs'
+import { eq } from 'drizzle-orm'
+import { openDatabase } from '#app/db/client.server.ts'
+import { people } from '#app/db/schema.ts'
+import { spreadSettings, storeRun } from '#tests/support/stored-run.ts'
+import { expect, expectAccessible, test } from './fixtures.ts'
+
+const pictures = 'test-results/pictures'
+
+test('A student reads the analysis of a run: value, cause, lines, budget, Monte Carlo, and what to measure next', async ({
+  site,
+  signInAs,
+}) => {
+  test.setTimeout(240_000)
+  mkdirSync(pictures, { recursive: true })
+  const db = await openDatabase(site.databaseUrl)
+  const student = await db.query.people.findFirst({ where: eq(people.email, 'student@lab.test') })
+  const runId = await storeRun(db, {
+    personId: student?.id ?? '',
+    settings: [...spreadSettings, ...spreadSettings],
+    truth: { strayFieldTesla: 55e-6 },
+    edgeMetres: 0.15e-3,
+  })
+  db.$client.close()
+  const page = await signInAs('student', { path: '/benches/bench-1' })
+  await page.getByRole('link', { name: 'Analysis of this run' }).click()
+  await page.waitForURL(`**/runs/${runId}/analysis`)
+
+  await test.step('reads the value with its uncertainty, and what shifts it', async () => {
+    await expect(page.getByText(/^\d\.\d+\(\d+\) × 10¹¹ C\/kg$/)).toBeVisible()
+    await expect(
+      page.getByText(/stray field along the coil axis \d+(\.\d)? ± \d+(\.\d)? µT/).first(),
+    ).toBeVisible()
+    await expect(page.getByText(/No such readings|constant percentage error/).first()).toBeVisible()
+    await expect(page.getByText(/accepted value/)).toHaveCount(0)
+    await expectAccessible(page)
+  })
+
+  await test.step('looks at another line, its points by keyboard and its numbers', async () => {
+    await page.getByRole('link', { name: '√(2V)/r against kIg' }).first().click()
+    await page.waitForURL(/line=root/)
+    await expect(page.getByRole('img', { name: /√\(2V\)\/r against kIg of 24 readings/ })).toBeVisible()
+    await page.getByRole('slider', { name: 'reading' }).press('ArrowRight')
+    await expect(page.getByText(/^\d+: residual [+−]\d\.\d/)).toBeVisible()
+    await page.getByText('as a table').first().click()
+    await expect(page.getByRole('columnheader', { name: 'kIg, mT' })).toBeVisible()
+  })
+
+  await test.step('draws by Monte Carlo, with progress, and can stop it', async () => {
+    await page.getByRole('button', { name: 'Draw' }).click()
+    await expect(page.getByText(/[\d,]+ drawn/)).toBeVisible()
+    await page.getByRole('button', { name: 'Stop' }).click()
+    await expect(page.getByText(/first-order budget/).last()).toBeVisible()
+    await expect(page.getByRole('img', { name: /How often each value/ })).toBeVisible()
+  })
+
+  await test.step('states it by another fit, and back', async () => {
+    await page
+      .getByLabel('stated by')
+      .selectOption({ label: 'V against (kIgr)²/2 through the origin, ordinary least squares' })
+    await page.getByRole('button', { name: 'State it by this fit' }).click()
+    await expect(page.getByText(/by V against \(kIgr\)²\/2 through the origin/).first()).toBeVisible()
+    await page.getByLabel('stated by').selectOption({ label: 'the general model' })
+    await page.getByRole('button', { name: 'State it by this fit' }).click()
+    await expect(page.getByText(/95 %, by the general model/)).toBeVisible()
+  })
+
+  await test.step('stands in both lights, on a phone and on a projector', async () => {
+    for (const light of ['dark', 'lit'] as const)
+      for (const size of [
+        { name: '360', width: 360, height: 800 },
+        { name: '1080p', width: 1920, height: 1080 },
+      ]) {
+        await page.setViewportSize(size)
+        await page.getByRole('button', { name: light, exact: true }).click()
+        await expect(page.locator('html')).toHaveAttribute('data-light', light)
+        const overflow = await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
+        await page.screenshot({ path: `${pictures}/analysis-${light}-${size.name}.png`, fullPage: true })
+        expect(overflow, 'sideways scroll in px').toBeLessThanOrEqual(0)
+        await expectAccessible(page)
+      }
+  })
+})
+
+test('An instructor sees how a run stands to the accepted value, and takes further settings into its plan', async ({
+  site,
+  signInAs,
+}) => {
+  const db = await openDatabase(site.databaseUrl)
+  const student = await db.query.people.findFirst({ where: eq(people.email, 'student@lab.test') })
+  const runId = await storeRun(db, { personId: student?.id ?? '', settings: spreadSettings.slice(3, 8) })
+  db.$client.close()
+  const page = await signInAs('instructor', { path: `/runs/${runId}/analysis` })
+  await expect(page.getByText(/% (above|below) the accepted value, ζ = /)).toBeVisible()
+  await page.getByRole('button', { name: 'Add to the plan of this run' }).click()
+  await expect(page.getByText(/added to the plan|Added to the plan/)).toBeVisible()
+  await expect(page.getByRole('heading', { name: 'Planned' })).toBeVisible()
+  await page.getByRole('button', { name: 'take off' }).first().click()
+  await expect(page.getByText('Taken off the plan.').first()).toBeVisible()
+})
