@@ -15,6 +15,7 @@ export default [
       index('routes/benches/bench.tsx'),
       route('cautions', 'routes/benches/cautions.tsx'),
       route('log', 'routes/benches/log.tsx'),
+      route('planner', 'routes/benches/planner.tsx'),
       route('commands', 'routes/benches/commands.ts'),
       route('runs', 'routes/benches/runs.ts'),
       route('readings', 'routes/benches/readings.ts'),

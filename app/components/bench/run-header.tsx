@@ -23,6 +23,9 @@ export function RunHeader({ view }: { view: BenchView | TypedBenchView }) {
         )}
       </h2>
       <div className="flex flex-wrap items-center justify-end gap-x-3">
+        <Link to={href('/benches/:benchId/planner', { benchId: view.bench.id })} className="link-alone">
+          Planner
+        </Link>
         {run && view.readings.length > 0 && (
           <Link to={href('/runs/:runId/analysis', { runId: run.id })} className="link-alone">
             Analysis of this run
