@@ -141,7 +141,7 @@ function mapOf(
         return {
           coilAmps,
           diameterMetres: 2 * (found?.radiusMetres ?? 0),
-          refused: found?.refused ?? 'limit',
+          refused: found ? found.refused : 'limit',
           times: chosen.filter(isHere).length,
         }
       }),
