@@ -28,7 +28,10 @@ export default [
       route('readings/:readingId/strike', 'routes/benches/strike.ts'),
     ]),
 
+    route('runs', 'routes/runs/runs.tsx'),
+    route('runs/import', 'routes/runs/import.tsx'),
     ...prefix('runs/:runId', [
+      route('imported', 'routes/runs/imported.tsx'),
       route('analysis', 'routes/runs/analysis.tsx'),
       route('plan', 'routes/runs/plan.ts'),
       route('statement', 'routes/runs/statement.ts'),

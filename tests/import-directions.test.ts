@@ -108,6 +108,7 @@ describe('The directions of imports', () => {
     const areas = [
       'app/benches',
       'app/runs',
+      'app/imports',
       'app/people',
       'app/bridge-link',
       'app/auth',

@@ -14,6 +14,7 @@ const table = {
   'reset-trip': ['technician', 'instructor', 'student'],
   'reset-every-trip': ['technician'],
   capture: ['technician', 'instructor', 'student'],
+  'import-readings': ['technician', 'instructor', 'student'],
   'strike-any-reading': ['technician', 'instructor'],
   'read-runs': ['technician', 'instructor'],
   'see-accepted-value': ['technician', 'instructor'],

@@ -1,10 +1,12 @@
 import { data, type MiddlewareFunction } from 'react-router'
 import { largestUploadBytes } from '../files/picture-limits.ts'
+import { largestImportBody } from '../imports/limits.ts'
 import { isRead } from './same-origin.server.ts'
 
 /** A form of this site is some hundred bytes; a batch of the bridge may be long. */
 const largestForm = 64 * 1024
 const largestBatch = 8 * 1024 * 1024
+const importPath = /^\/runs\/import(\.data)?$/
 const uploadPath = /^\/benches\/[^/]+\/readings\/[^/]+\/photo(\.data)?$/
 
 /** Refuses a body that is too long, or whose length is not told, before anything reads it. */
@@ -19,6 +21,7 @@ export const limitBody: MiddlewareFunction<Response> = ({ request }, next) => {
 
 function largestOf(path: string): number {
   if (path.startsWith('/api/bridge/')) return largestBatch
+  if (importPath.test(path)) return largestImportBody
   return uploadPath.test(path) ? largestUploadBytes : largestForm
 }
 

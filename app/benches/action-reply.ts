@@ -15,6 +15,7 @@ export const ownCodes = {
   notPermitted: 'not-permitted',
   bridgeSilent: 'bridge-silent',
   struck: 'struck',
+  noBench: 'no-bench',
   noInstruments: 'no-instruments',
   hasInstruments: 'has-instruments',
   cautionsOpen: 'cautions-open',

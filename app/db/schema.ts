@@ -1,5 +1,7 @@
 import { sql } from 'drizzle-orm'
 import { blob, index, integer, primaryKey, real, sqliteTable, text, unique } from 'drizzle-orm/sqlite-core'
+import type { FieldFactor } from '../analysis/reading.ts'
+import type { ImportMapping } from '../imports/mapping.ts'
 import type { CommissionedBench, TypedBench } from '../protocol/bench-config.ts'
 import type { ChannelStatus } from '../protocol/messages.ts'
 
@@ -173,14 +175,15 @@ export const spoolMarks = sqliteTable('spool_marks', {
   confirmedSummary: integer().notNull(),
 })
 
-/** A series of readings on one bench: the logbook's page. */
+/**
+ * A series of readings on one bench: the logbook's page. An imported one may have no bench, and then a field of its own,
+ * which stands in `imports`.
+ */
 export const runs = sqliteTable(
   'runs',
   {
     id: id(),
-    benchId: text()
-      .notNull()
-      .references(() => benches.id),
+    benchId: text().references(() => benches.id),
     personId: text()
       .notNull()
       .references(() => people.id),
@@ -192,7 +195,8 @@ export const runs = sqliteTable(
 
 /**
  * A voltage and a current with which the beam was read. Values as measured, in SI, never overwritten.
- * `measured`: a window that the bridge captured, with its samples. `typed`: read off meters by a person.
+ * `measured`: a window that the bridge captured, with its samples. `typed`: read off meters by a person. `imported`: out of
+ * a file; its uncertainties are as they were stated, 0 where they were not.
  */
 export const readings = sqliteTable(
   'readings',
@@ -202,13 +206,14 @@ export const readings = sqliteTable(
       .notNull()
       .references(() => runs.id),
     number: integer().notNull(),
-    benchId: text().notNull(),
-    revision: integer().notNull(),
+    /** Null with the run's. */
+    benchId: text(),
+    revision: integer(),
     personId: text()
       .notNull()
       .references(() => people.id),
     capturedAt: at().notNull(),
-    source: text({ enum: ['measured', 'typed'] })
+    source: text({ enum: ['measured', 'typed', 'imported'] })
       .notNull()
       .default('measured'),
     windowSeconds: real().notNull(),
@@ -303,6 +308,36 @@ export const rungs = sqliteTable(
   },
   (table) => [index('rungs_reading').on(table.readingId)],
 )
+
+/** The file that a run was imported from, and how it was read. Of the file itself the digest is kept. */
+export const imports = sqliteTable('imports', {
+  runId: text()
+    .primaryKey()
+    .references(() => runs.id),
+  personId: text()
+    .notNull()
+    .references(() => people.id),
+  importedAt: createdAt(),
+  fileName: text().notNull(),
+  /** SHA-256 of the bytes as they were sent, hexadecimal. */
+  digest: text().notNull(),
+  bytes: integer().notNull(),
+  rowsLeftOut: integer().notNull(),
+  mapping: text({ mode: 'json' }).$type<ImportMapping>().notNull(),
+  /** Of a run without a bench: the centre field an ampere, in teslas, with its standard uncertainty. */
+  field: text({ mode: 'json' }).$type<FieldFactor>(),
+})
+
+/** The diameter of an imported reading as its file has it; the two edges where it has those. */
+export const statedDiameters = sqliteTable('stated_diameters', {
+  readingId: text()
+    .primaryKey()
+    .references(() => readings.id),
+  diameterMetres: real().notNull(),
+  uDiameterMetres: real().notNull(),
+  leftMetres: real(),
+  rightMetres: real(),
+})
 
 /** A photo of a reading's beam. The picture itself is a file, named by the row; it is never changed. */
 export const photos = sqliteTable(

@@ -79,7 +79,10 @@ export type AnalysisView = {
     id: string
     startedAt: string
     by: string
-    bench: { id: string; name: string; place: string; hasPorts: boolean }
+    /** Null where it was imported with a field of its own. */
+    bench: { id: string; name: string; place: string; hasPorts: boolean } | null
+    /** The file that it was imported from. */
+    fileName: string | null
   }
   /** On a real bench in a dark room the tube alone may glow. */
   isRealBench: boolean

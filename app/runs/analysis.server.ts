@@ -4,7 +4,7 @@ import type { BudgetBench, Reading, ReadingResult } from '../analysis/reading.ts
 import { commonParts, seriesReading } from '../analysis/series-input.ts'
 import type { SeriesField, SeriesReading } from '../analysis/series-model.ts'
 import { may } from '../auth/capabilities.ts'
-import { requireVisibleBench, type Watcher } from '../benches/visible-benches.server.ts'
+import { requireVisibleBench, toFramed, type Watcher } from '../benches/visible-benches.server.ts'
 import type { Database } from '../db/client.server.ts'
 import {
   budgetRows,
@@ -49,11 +49,11 @@ export async function loadAnalysis(
   { runId, person, line, method }: { runId: string; person: Watcher; line: LineKind; method: Method },
 ): Promise<AnalysisView> {
   const run = await requireVisibleRun(db, { runId, person })
-  const [stored, planned, statedFit, { config }] = await Promise.all([
+  const [stored, planned, statedFit, bench] = await Promise.all([
     loadReadings(db, runId),
     listPlanned(db, runId),
     findStatedFit(db, runId),
-    requireVisibleBench(db, { benchId: run.bench.id, person }),
+    run.bench && requireVisibleBench(db, { benchId: run.bench.id, person }),
   ])
   const series = seriesOf(stored)
   const { entries, leftOut, field } = series
@@ -71,9 +71,10 @@ export async function loadAnalysis(
       id: run.id,
       startedAt: run.startedAt.toISOString(),
       by: run.by,
-      bench: { ...run.bench, hasPorts: config.instruments !== null },
+      bench: bench && toFramed(bench),
+      fileName: run.fileName,
     },
-    isRealBench: config.picturePath === null,
+    isRealBench: !bench?.config.picturePath,
     rows: stored.map((row) => seriesRow(row, { entries, leftOut, diagnosis })),
     mean,
     reductions: reductionsOf(series, stored.length),
@@ -84,7 +85,10 @@ export async function loadAnalysis(
       ...diagnosisWords(diagnosis, numbers),
       effects: effectRows(diagnosis),
       subsets: subsetRows(diagnosis),
-      further: field && needsMore(diagnosis) ? furtherSettings({ entries, field, config, diagnosis }) : [],
+      further:
+        field && bench && needsMore(diagnosis)
+          ? furtherSettings({ entries, field, config: bench.config, diagnosis })
+          : [],
     },
     budget: diagnosis ? budgetRows(entries, parts, diagnosis) : [],
     monteCarlo: monteCarloOf(series),
@@ -99,10 +103,11 @@ function seriesOf(stored: readonly StoredReading[]): Series {
     if (row.struck) leftOut.set(row.reading.id, `struck: ${row.struck.reason}`)
     return !row.struck
   })
-  const revision = Math.max(...standing.map(({ reading }) => reading.revision))
+  const revisionOf = ({ reading }: StoredReading) => reading.revision ?? 0
+  const revision = Math.max(...standing.map(revisionOf))
   const entries: Entry[] = []
   for (const row of standing) {
-    if (row.reading.revision !== revision) {
+    if (revisionOf(row) !== revision) {
       leftOut.set(row.reading.id, `taken under revision ${row.reading.revision} of the bench: another series`)
       continue
     }

@@ -1,6 +1,6 @@
 import { and, asc, eq } from 'drizzle-orm'
 import * as z from 'zod'
-import { type Answered, done, fieldErrors } from '../benches/action-reply.ts'
+import { type Answered, done, fieldErrors, ownCodes, refused } from '../benches/action-reply.ts'
 import { numberField } from '../benches/number-field.ts'
 import { requireVisibleBench, type Watcher } from '../benches/visible-benches.server.ts'
 import { type Database, write } from '../db/client.server.ts'
@@ -47,6 +47,14 @@ export async function addPlanned(
   { runId, person, form }: { runId: string; person: Watcher; form: FormData },
 ): Promise<Answered> {
   const run = await requireVisibleRun(db, { runId, person })
+  if (!run.bench)
+    return {
+      status: 409,
+      reply: refused({
+        code: ownCodes.noBench,
+        sentence: 'This run was imported without a bench of ours: there is none to plan a setting on.',
+      }),
+    }
   const { config } = await requireVisibleBench(db, { benchId: run.bench.id, person })
   const columns = ['anodeVolts', 'coilAmps', 'polarity'] as const
   const [volts, amps, polarities] = columns.map((name) => form.getAll(name)) as [

@@ -1,6 +1,5 @@
 import {
   type BudgetBench,
-  type EdgeSpread,
   type GivenDiameter,
   type Reading,
   type ReadingResult,
@@ -9,21 +8,31 @@ import {
 import { readingBench } from '../benches/reading-bench.ts'
 import { findRung } from '../benches/scale.ts'
 import type { readings } from '../db/schema.ts'
-import type { CommissionedBench } from '../protocol/bench-config.ts'
+import { importedBench } from '../imports/imported-bench.ts'
 import type { ReadingView } from './reading-view.server.ts'
 import type { Reads } from './reads.server.ts'
+import type { StoredReading } from './run-readings.server.ts'
 
 const benches = new Map<string, BudgetBench>()
+/** Fields of imports are many, and soon made again. */
+const mostBenches = 100
 
-/** One object a revision, so that its field is tabulated once in the life of the process. */
-function benchOf(config: CommissionedBench): BudgetBench {
-  const key = JSON.stringify(config)
-  const bench = benches.get(key) ?? readingBench(config)
+type Entries = Reads & Pick<StoredReading, 'config' | 'imported' | 'edgeSpread'>
+
+/** One object a revision, and a way of importing, so that its field is tabulated once in the life of the process. */
+function benchOf({ config, imported }: Entries): BudgetBench {
+  const key = JSON.stringify([config, imported])
+  const bench = benches.get(key) ?? makeBench(config, imported)
+  if (benches.size >= mostBenches) benches.clear()
   benches.set(key, bench)
   return bench
 }
 
-type Entries = Reads & { config: CommissionedBench; edgeSpread: EdgeSpread | null }
+function makeBench(config: Entries['config'], imported: Entries['imported']): BudgetBench {
+  if (imported) return importedBench(config, imported)
+  if (!config) throw new Error('A reading without a bench was not imported')
+  return readingBench(config)
+}
 
 /**
  * One reading as `readingBudget` takes it and what that gives, under the revision that it was taken with. Null where
@@ -33,20 +42,21 @@ export function budgetOf(
   stored: typeof readings.$inferSelect,
   entries: Entries,
 ): { reading: Reading & { bench: BudgetBench }; result: ReadingResult } | null {
-  const { config, edges, photos, edgeSpread } = entries
+  const { edges, photos, edgeSpread } = entries
   const given = givenOf(entries)
   if (edges.length + photos.length === 0 && !given) return null
   const { anodeDigitVolts, coilDigitAmps } = stored
+  const isWindow = stored.source === 'measured'
   const reading = {
-    bench: benchOf(config),
+    bench: benchOf(entries),
     voltageVolts: stored.anodeVolts,
     uVoltageVolts: stored.uAnodeVolts,
-    voltageDegreesOfFreedom: Math.max(1, stored.anodeEffectiveCount - 1),
+    ...(isWindow && { voltageDegreesOfFreedom: Math.max(1, stored.anodeEffectiveCount - 1) }),
     ...(anodeDigitVolts !== null && { voltageDigitVolts: anodeDigitVolts }),
     // Whether the meter stands before or behind the reversing relay, the polarity tells the sense.
     currentAmps: Math.abs(stored.coilAmps) * (stored.polarity === -1 ? -1 : 1),
     uCurrentAmps: stored.uCoilAmps,
-    currentDegreesOfFreedom: Math.max(1, stored.coilEffectiveCount - 1),
+    ...(isWindow && { currentDegreesOfFreedom: Math.max(1, stored.coilEffectiveCount - 1) }),
     ...(coilDigitAmps !== null && { currentDigitAmps: coilDigitAmps }),
     leftEdges: edges.map(({ leftMetres }) => leftMetres),
     rightEdges: edges.map(({ rightMetres }) => rightMetres),
@@ -62,8 +72,12 @@ export function budgetOf(
   }
 }
 
-function givenOf({ config, rung }: Entries): GivenDiameter | undefined {
-  const found = rung && findRung(config, rung.rung)
+function givenOf({ config, rung, stated }: Entries): GivenDiameter | undefined {
+  if (stated) {
+    const { diameterMetres, uDiameterMetres } = stated
+    return { source: 'stated', diameterMetres, uDiameterMetres }
+  }
+  const found = rung && config && findRung(config, rung.rung)
   if (!found) return undefined
   return {
     source: 'rung',

@@ -7,16 +7,17 @@ import {
 } from '../metrology/instrument-accuracy.ts'
 import { workOut } from './reading-result.server.ts'
 import type { Reads } from './reads.server.ts'
-import { loadReadings } from './run-readings.server.ts'
+import { loadReadings, type StoredReading } from './run-readings.server.ts'
 
 export type ReadingView = {
   id: string
   number: number
   capturedAt: string
   by: string
-  revision: number
-  /** Measured by the bridge, or typed by a person who read the meters. */
-  source: 'measured' | 'typed'
+  /** Null where the run was imported with a field of its own. */
+  revision: number | null
+  /** Measured by the bridge, typed by a person who read the meters, or imported from a file. */
+  source: 'measured' | 'typed' | 'imported'
   polarity: 1 | -1
   anodeVolts: number
   /** Standard uncertainty of this value: scatter, resolution and accuracy of the meter together. */
@@ -30,6 +31,7 @@ export type ReadingView = {
   photos: Reads['photos']
   /** The rung that the beam met, on a bench that has them, and the diameter that it stands for. */
   rung: (NonNullable<Reads['rung']> & { diameterMetres: number; uDiameterMetres: number }) | null
+  stated: Reads['stated']
   /** Null until someone has entered edges or a rung or measured a photo, and where the numbers give no orbit. */
   result: {
     chargeToMass: number
@@ -43,6 +45,7 @@ export type ReadingView = {
 }
 
 type Accuracy = ReturnType<typeof accuracyOf>['anode']
+const exact: Accuracy = { percentOfReading: 0, digits: 0, digitSize: 0 }
 type Figure = { value: number; standardError: number; digit: number | null }
 
 /** Scatter of the window, the meter's accuracy and the size of the last digit, as one standard uncertainty. */
@@ -58,9 +61,9 @@ function combined({ value, standardError, digit }: Figure, accuracy: Accuracy): 
 export async function listReadings(db: Database, { runId }: { runId: string }): Promise<ReadingView[]> {
   const rows = await loadReadings(db, runId)
   return rows.map(({ reading, by, struck, ...entries }) => {
-    const { anode, coils } = accuracyOf(entries.config)
+    const { anode, coils } = accuraciesOf(entries)
     const { anodeVolts, uAnodeVolts, anodeDigitVolts, coilAmps, uCoilAmps, coilDigitAmps } = reading
-    const rung = entries.rung && findRung(entries.config, entries.rung.rung)
+    const rung = entries.rung && entries.config && findRung(entries.config, entries.rung.rung)
     return {
       id: reading.id,
       number: reading.number,
@@ -77,6 +80,7 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       coilStandardErrorAmps: uCoilAmps,
       edges: entries.edges,
       photos: entries.photos,
+      stated: entries.stated,
       rung:
         entries.rung && rung
           ? { ...entries.rung, diameterMetres: rung.distanceMetres, uDiameterMetres: rung.uDistanceMetres }
@@ -85,4 +89,13 @@ export async function listReadings(db: Database, { runId }: { runId: string }): 
       struck,
     }
   })
+}
+
+/** A stated uncertainty is all of it; a field of its own comes without meters of ours. */
+function accuraciesOf({ config, imported }: Pick<StoredReading, 'config' | 'imported'>) {
+  const { anode, coils } = config ? accuracyOf(config) : { anode: exact, coils: exact }
+  return {
+    anode: imported?.statesVoltage ? exact : anode,
+    coils: imported?.statesCurrent ? exact : coils,
+  }
 }

@@ -1,25 +1,33 @@
 import { asc, eq, sql } from 'drizzle-orm'
 import type { PhotoDiameter } from '../analysis/reading.ts'
 import type { Database } from '../db/client.server.ts'
-import { edges, people, photoMeasurements, photos, readings, rungs } from '../db/schema.ts'
+import { edges, people, photoMeasurements, photos, readings, rungs, statedDiameters } from '../db/schema.ts'
 
 type By = { personId: string; name: string }
 type EdgesRead = By & { leftMetres: number; rightMetres: number }
 type PhotoRead = By & PhotoDiameter & { photoId: string }
 type RungRead = By & { rung: string; settingHalfWidthAmps: number | null }
 
+type StatedDiameter = Omit<typeof statedDiameters.$inferSelect, 'readingId'>
+
 /**
  * What counts of each person for one reading, the newest of edges and photo, in the order in which it came; or the rung
- * that the beam met, the newest of anyone.
+ * that the beam met, the newest of anyone; or what the file says that the reading was imported from.
  */
-export type Reads = { edges: EdgesRead[]; photos: PhotoRead[]; rung: RungRead | null }
+export type Reads = {
+  edges: EdgesRead[]
+  photos: PhotoRead[]
+  rung: RungRead | null
+  stated: StatedDiameter | null
+}
 
-export const noReads: Reads = { edges: [], photos: [], rung: null }
+export const noReads: Reads = { edges: [], photos: [], rung: null, stated: null }
 
 /** What people read of the beam, by reading of a run. */
 export async function findReads(db: Database, runId: string): Promise<Map<string, Reads>> {
-  const [rungOf, ...both] = await Promise.all([
+  const [rungOf, statedOf, ...both] = await Promise.all([
     findRungs(db, runId),
+    findStated(db, runId),
     selectEdges(db, runId),
     selectPhotos(db, runId),
   ])
@@ -31,7 +39,7 @@ export async function findReads(db: Database, runId: string): Promise<Map<string
     byPerson.delete(row.by.personId)
     byReading.set(row.readingId, byPerson.set(row.by.personId, row))
   }
-  const readingIds = new Set([...byReading.keys(), ...rungOf.keys()])
+  const readingIds = new Set([...byReading.keys(), ...rungOf.keys(), ...statedOf.keys()])
   return new Map(
     [...readingIds].map((readingId) => {
       const newest = [...(byReading.get(readingId)?.values() ?? [])]
@@ -41,6 +49,7 @@ export async function findReads(db: Database, runId: string): Promise<Map<string
           edges: newest.flatMap(({ by, edges }) => (edges ? [{ ...by, ...edges }] : [])),
           photos: newest.flatMap(({ by, photo }) => (photo ? [{ ...by, ...photo }] : [])),
           rung: rungOf.get(readingId) ?? null,
+          stated: statedOf.get(readingId) ?? null,
         },
       ]
     }),
@@ -63,6 +72,15 @@ async function findRungs(db: Database, runId: string): Promise<Map<string, RungR
     .orderBy(asc(rungs.enteredAt), asc(sql`${rungs}.rowid`))
   // Of several rows the newest stays.
   return new Map(rows.map(({ readingId, ...rung }) => [readingId, rung]))
+}
+
+async function findStated(db: Database, runId: string): Promise<Map<string, StatedDiameter>> {
+  const rows = await db
+    .select({ stated: statedDiameters })
+    .from(statedDiameters)
+    .innerJoin(readings, eq(readings.id, statedDiameters.readingId))
+    .where(eq(readings.runId, runId))
+  return new Map(rows.map(({ stated: { readingId, ...stated } }) => [readingId, stated]))
 }
 
 async function selectEdges(db: Database, runId: string) {

@@ -1,7 +1,8 @@
 import { and, asc, eq } from 'drizzle-orm'
 import { type EdgeSpread, pooledEdgeSpread } from '../analysis/edge-spread.ts'
 import type { Database } from '../db/client.server.ts'
-import { benchRevisions, people, readings, strikes } from '../db/schema.ts'
+import { benchRevisions, imports, people, readings, strikes } from '../db/schema.ts'
+import { type ImportedAs, importedAs } from '../imports/imported-bench.ts'
 import type { CommissionedBench } from '../protocol/bench-config.ts'
 import { findReads, noReads, type Reads } from './reads.server.ts'
 
@@ -11,7 +12,9 @@ type Strike = { reason: string; by: string; at: string }
 export type StoredReading = Reads & {
   reading: typeof readings.$inferSelect
   by: string
-  config: CommissionedBench
+  /** Null where the run was imported with a field of its own. */
+  config: CommissionedBench | null
+  imported: ImportedAs | null
   /** Pooled over the readings of the run that are not struck. */
   edgeSpread: EdgeSpread | null
   struck: Strike | null
@@ -19,12 +22,12 @@ export type StoredReading = Reads & {
 
 /** The readings of a run by number, each with the bench as it was when the reading was taken. */
 export async function loadReadings(db: Database, runId: string): Promise<StoredReading[]> {
-  const [rows, readsOf, strikeOf] = await Promise.all([
+  const [rows, readsOf, strikeOf, imported] = await Promise.all([
     db
       .select({ reading: readings, by: people.name, config: benchRevisions.config })
       .from(readings)
       .innerJoin(people, eq(people.id, readings.personId))
-      .innerJoin(
+      .leftJoin(
         benchRevisions,
         and(eq(benchRevisions.benchId, readings.benchId), eq(benchRevisions.revision, readings.revision)),
       )
@@ -32,6 +35,7 @@ export async function loadReadings(db: Database, runId: string): Promise<StoredR
       .orderBy(asc(readings.number)),
     findReads(db, runId),
     findStrikes(db, runId),
+    findImportedAs(db, runId),
   ])
   const standing = rows.filter(({ reading }) => !strikeOf.has(reading.id))
   const edgeSpread = pooledEdgeSpread(
@@ -43,9 +47,18 @@ export async function loadReadings(db: Database, runId: string): Promise<StoredR
   return rows.map((row) => ({
     ...row,
     ...(readsOf.get(row.reading.id) ?? noReads),
+    imported,
     edgeSpread,
     struck: strikeOf.get(row.reading.id) ?? null,
   }))
+}
+
+async function findImportedAs(db: Database, runId: string): Promise<ImportedAs | null> {
+  const [row] = await db
+    .select({ field: imports.field, mapping: imports.mapping })
+    .from(imports)
+    .where(eq(imports.runId, runId))
+  return row ? importedAs(row) : null
 }
 
 async function findStrikes(db: Database, runId: string): Promise<Map<string, Strike>> {

@@ -24,11 +24,19 @@ export async function strikeReading(
         sentence: 'Only the person who captured a reading, an instructor or a technician may strike it.',
       }),
     }
-  const parsed = strikeFormSchema.safeParse(Object.fromEntries(request.form))
+  return storeStrike(db, { reading, personId: request.person.id, form: request.form })
+}
+
+/** The strike itself, of a reading that this person may strike. */
+export async function storeStrike(
+  db: Database,
+  { reading, personId, form }: { reading: { id: string; number: number }; personId: string; form: FormData },
+): Promise<Answered> {
+  const parsed = strikeFormSchema.safeParse(Object.fromEntries(form))
   if (!parsed.success) return { status: 400, reply: fieldErrors(z.flattenError(parsed.error).fieldErrors) }
   const values = {
     readingId: reading.id,
-    personId: request.person.id,
+    personId,
     reason: parsed.data.reason,
     struckAt: new Date(),
   }

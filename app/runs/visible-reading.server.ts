@@ -1,4 +1,4 @@
-import { and, eq } from 'drizzle-orm'
+import { and, eq, ne } from 'drizzle-orm'
 import { data } from 'react-router'
 import { visibleTo, type Watcher } from '../benches/visible-benches.server.ts'
 import type { Database, Transaction } from '../db/client.server.ts'
@@ -6,7 +6,7 @@ import { benches, benchRevisions, readings, strikes } from '../db/schema.ts'
 import type { CommissionedBench } from '../protocol/bench-config.ts'
 
 /**
- * A reading of a bench that this person may watch, with the bench as it was when the reading was taken.
+ * A reading taken at a bench that this person may watch, with the bench as it was when the reading was taken.
  * Throws a 404 when there is none.
  */
 export async function requireVisibleReading(
@@ -36,7 +36,14 @@ export async function requireVisibleReading(
       and(eq(benchRevisions.benchId, readings.benchId), eq(benchRevisions.revision, readings.revision)),
     )
     .leftJoin(strikes, eq(strikes.readingId, readings.id))
-    .where(and(eq(readings.id, readingId), eq(readings.benchId, benchId), visibleTo(db, person)))
+    .where(
+      and(
+        eq(readings.id, readingId),
+        eq(readings.benchId, benchId),
+        ne(readings.source, 'imported'),
+        visibleTo(db, person),
+      ),
+    )
   if (!reading) throw data('There is no such reading, or it is not on one of your benches.', { status: 404 })
   const { struckAt, ...rest } = reading
   return { ...rest, isStruck: struckAt !== null }

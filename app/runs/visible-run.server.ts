@@ -1,16 +1,29 @@
-import { and, eq, exists, or, type SQL, sql } from 'drizzle-orm'
+import { and, eq, exists, isNull, or, type SQL, sql } from 'drizzle-orm'
 import { data } from 'react-router'
 import { may } from '../auth/capabilities.ts'
 import { visibleTo, type Watcher } from '../benches/visible-benches.server.ts'
 import type { Database, Transaction } from '../db/client.server.ts'
-import { benches, edges, people, photoMeasurements, photos, readings, rungs, runs } from '../db/schema.ts'
+import {
+  benches,
+  edges,
+  imports,
+  people,
+  photoMeasurements,
+  photos,
+  readings,
+  rungs,
+  runs,
+} from '../db/schema.ts'
 
 export type VisibleRun = {
   id: string
   startedAt: Date
   personId: string
   by: string
-  bench: { id: string; name: string; place: string }
+  /** Null where it was imported with a field of its own. */
+  bench: { id: string; name: string; place: string } | null
+  /** The file that it was imported from. */
+  fileName: string | null
 }
 
 /** The condition on `runs` that leaves the ones that a person may read: all for staff, else those that they took part in. */
@@ -50,6 +63,12 @@ export function runsOf(db: Database | Transaction, person: Watcher): SQL | undef
   )
 }
 
+/** The condition on `runs` and `benches` beside it: theirs to read, on a bench that they may watch, if on any. */
+export function visibleRuns(db: Database | Transaction, person: Watcher): SQL | undefined {
+  const onTheirs = visibleTo(db, person)
+  return and(runsOf(db, person), onTheirs && or(isNull(runs.benchId), onTheirs))
+}
+
 /** A run that this person may read. Throws a 404 when there is none. */
 export async function requireVisibleRun(
   db: Database | Transaction,
@@ -62,11 +81,13 @@ export async function requireVisibleRun(
       personId: runs.personId,
       by: people.name,
       bench: { id: benches.id, name: benches.name, place: benches.place },
+      fileName: imports.fileName,
     })
     .from(runs)
     .innerJoin(people, eq(people.id, runs.personId))
-    .innerJoin(benches, eq(benches.id, runs.benchId))
-    .where(and(eq(runs.id, runId), visibleTo(db, person), runsOf(db, person)))
+    .leftJoin(benches, eq(benches.id, runs.benchId))
+    .leftJoin(imports, eq(imports.runId, runs.id))
+    .where(and(eq(runs.id, runId), visibleRuns(db, person)))
   if (!run) throw data('There is no such run, or it is not one of yours.', { status: 404 })
   return run
 }

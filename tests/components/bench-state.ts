@@ -62,6 +62,7 @@ export function readingView(changes: Partial<ReadingView> = {}): ReadingView {
     edges: [],
     photos: [],
     rung: null,
+    stated: null,
     result: null,
     struck: null,
     ...changes,

@@ -78,6 +78,7 @@ describe('A request that cannot be read', () => {
     '/api/tickets',
     '/benches/bench-1/commands',
     '/benches/bench-1/readings/none/edges',
+    '/runs/import',
     '/benches/bench-4/checklist',
     '/benches/bench-4/typed-readings',
     '/benches/bench-1/readings/none/photos/none/measurements',

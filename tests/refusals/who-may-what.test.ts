@@ -48,7 +48,7 @@ afterAll(async () => {
 
 const tables = [
   ...['planned_settings', 'statements', 'photo_measurements', 'photos', 'edges', 'strikes'],
-  ...['reading_samples', 'readings', 'runs'],
+  ...['reading_samples', 'stated_diameters', 'rungs', 'readings', 'imports', 'checklists', 'runs'],
 ]
 
 /** Each test finds one reading of bench 1, captured by the student's partner, with a photo of theirs. */
@@ -122,6 +122,12 @@ const marks = JSON.stringify({
   ],
 })
 
+const sentReadings = {
+  content: Buffer.from('V,I,d (cm)\n200,1.5,8.1\n').toString('base64'),
+  fileName: 'readings.csv',
+  bench: 'bench-1',
+}
+
 /** Every route with everyone: nobody signed in, a student of another class, a student, an instructor, a technician. */
 const table: Row[] = [
   ['GET', '/sign-in', [200, 302, 302, 302, 302]],
@@ -165,6 +171,12 @@ const table: Row[] = [
   ['GET', `${bench}/readings/:readingId/strike`, [302, 302, 302, 302, 302]],
   ['POST', `${bench}/readings/:readingId/strike`, [401, 404, 403, 200, 200], { reason: 'Read badly.' }],
   // The run of the student's partner, in which the student took no part.
+  ['GET', '/runs', [302, 200, 200, 200, 200]],
+  ['GET', '/runs/import', [302, 200, 200, 200, 200]],
+  ['POST', '/runs/import', [401, 404, 302, 302, 302], { ...sentReadings, intent: 'store' }],
+  // A run that was measured here was imported from no file.
+  ['GET', '/runs/:runId/imported', [302, 404, 404, 404, 404]],
+  ['POST', '/runs/:runId/imported', [401, 404, 404, 404, 404], { reason: 'Read badly.' }],
   ['GET', '/runs/:runId/analysis', [302, 404, 404, 200, 200]],
   ['GET', '/runs/:runId/plan', [302, 302, 302, 302, 302]],
   [

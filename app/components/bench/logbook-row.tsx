@@ -171,7 +171,16 @@ export function LogbookRow({ view, reading, isCurrent }: Props) {
               <span className="sr-only"> of reading {label}</span>
             </Link>
           )}
-          {!reading.struck && <StrikeReading benchId={benchId} readingId={reading.id} number={label} />}
+          {!reading.struck && (
+            <StrikeReading
+              action={href('/benches/:benchId/readings/:readingId/strike', {
+                benchId,
+                readingId: reading.id,
+              })}
+              readingId={reading.id}
+              number={label}
+            />
+          )}
           <AnswerLine
             reply={fetcher.data?.ok ? undefined : fetcher.data}
             fields={['left', 'right', 'rung', 'halfWidth']}

@@ -1,13 +1,18 @@
 import { useId, useState } from 'react'
-import { href, useFetcher } from 'react-router'
+import { useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
 import { AnswerLine } from '../answer-line.tsx'
 import { Dialog, DialogCancel } from '../dialog.tsx'
 
-type Props = { benchId: string; readingId: string; number: number }
+type Props = {
+  /** Where the strike is sent. */
+  action: string
+  readingId: string
+  number: number
+}
 
 /** Strikes a reading, with a reason. It stays in the logbook and counts no longer. */
-export function StrikeReading({ benchId, readingId, number }: Props) {
+export function StrikeReading({ action, readingId, number }: Props) {
   const id = useId()
   const fetcher = useFetcher<ActionReply>()
   const [isOpen, setOpen] = useState(false)
@@ -28,11 +33,8 @@ export function StrikeReading({ benchId, readingId, number }: Props) {
           It stays in the logbook, struck through with your reason, and counts no longer. This cannot be
           undone.
         </p>
-        <fetcher.Form
-          method="post"
-          action={href('/benches/:benchId/readings/:readingId/strike', { benchId, readingId })}
-          className="grid gap-4"
-        >
+        <fetcher.Form method="post" action={action} className="grid gap-4">
+          <input type="hidden" name="readingId" value={readingId} />
           <div className="grid gap-1">
             <label htmlFor={id} className="font-medium">
               Reason

@@ -1,4 +1,4 @@
-import { useRouteLoaderData } from 'react-router'
+import { href, Link, useRouteLoaderData } from 'react-router'
 import { may } from '../../auth/capabilities.ts'
 import { hasPorts, listVisibleBenches, type VisibleBench } from '../../benches/visible-benches.server.ts'
 import { roomWords } from '../../components/hall/attention.ts'
@@ -40,10 +40,15 @@ export default function Hall({ loaderData }: Route.ComponentProps) {
       <title>Hall · Coilside</title>
       <PageFrame
         where={
-          <h1>
-            <b className="font-medium">Hall</b>{' '}
-            <RoomWords benches={loaderData.benches} unwatched={loaderData.unwatched.length} />
-          </h1>
+          <div className="flex flex-wrap items-baseline gap-x-5">
+            <h1>
+              <b className="font-medium">Hall</b>{' '}
+              <RoomWords benches={loaderData.benches} unwatched={loaderData.unwatched.length} />
+            </h1>
+            <Link to={href('/runs')} className="link-alone">
+              Runs
+            </Link>
+          </div>
         }
         makeSafe={loaderData.mayMakeRoomSafe && <RoomMakeSafe />}
       >

@@ -8,8 +8,8 @@ import { MonteCarlo } from '../../components/analysis/monte-carlo.tsx'
 import { Section } from '../../components/analysis/section.tsx'
 import { SeriesTable } from '../../components/analysis/series-table.tsx'
 import { Statement } from '../../components/analysis/statement.tsx'
-import { BenchFrame } from '../../components/bench-frame.tsx'
 import { LocalTime } from '../../components/local-time.tsx'
+import { RunFrame } from '../../components/run-frame.tsx'
 import { databaseContext, personContext } from '../../context.ts'
 import { loadAnalysis } from '../../runs/analysis.server.ts'
 import { lines, methods } from '../../runs/fits.ts'
@@ -29,17 +29,30 @@ export async function loader({ request, params, context }: Route.LoaderArgs) {
 
 export default function Analysis({ loaderData: { view, person } }: Route.ComponentProps) {
   const { run, plot } = view
+  const name = run.bench?.name ?? run.fileName ?? 'a run'
   return (
-    <BenchFrame bench={run.bench} person={person}>
-      <title>{`Analysis · ${run.bench.name} · Coilside`}</title>
-      <div className={`grid max-w-7xl grid-cols-1 gap-6 ${view.isRealBench ? 'dark:[--beam:var(--ink)]' : ''}`}>
+    <RunFrame bench={run.bench} person={person}>
+      <title>{`Analysis · ${name} · Coilside`}</title>
+      <div
+        className={`grid max-w-7xl grid-cols-1 gap-6 ${view.isRealBench ? 'dark:[--beam:var(--ink)]' : ''}`}
+      >
         <header className="grid gap-1">
           <h1 className="text-xl font-bold">Analysis of a run</h1>
           <p className="text-ink-soft">
-            {run.by} on {run.bench.name}, <LocalTime iso={run.startedAt} parts="date and time" />.{' '}
-            <Link to={href('/benches/:benchId', { benchId: run.bench.id })} className="link">
-              To the bench
-            </Link>
+            {run.by}, {run.fileName ? 'imported for ' : 'on '}
+            {run.bench?.name ?? 'a field of its own'}, <LocalTime iso={run.startedAt} parts="date and time" />
+            .{' '}
+            {run.fileName ? (
+              <Link to={href('/runs/:runId/imported', { runId: run.id })} className="link">
+                To the file
+              </Link>
+            ) : (
+              run.bench && (
+                <Link to={href('/benches/:benchId', { benchId: run.bench.id })} className="link">
+                  To the bench
+                </Link>
+              )
+            )}
           </p>
         </header>
         <Section id="result" title="Result">
@@ -61,7 +74,7 @@ export default function Analysis({ loaderData: { view, person } }: Route.Compone
                 x={plot.x}
                 y={plot.y}
                 caption={plot.caption}
-                fileName={`${run.bench.id}-${plot.line}`}
+                fileName={`${run.bench?.id ?? 'imported'}-${plot.line}`}
               />
               <FitsTable fits={view.fits} plot={plot} />
             </div>
@@ -74,10 +87,10 @@ export default function Analysis({ loaderData: { view, person } }: Route.Compone
         )}
         {view.monteCarlo && (
           <Section id="monte-carlo" title="The same by Monte Carlo">
-            <MonteCarlo problem={view.monteCarlo} runNumber={run.bench.id} />
+            <MonteCarlo problem={view.monteCarlo} runNumber={run.bench?.id ?? 'imported'} />
           </Section>
         )}
       </div>
-    </BenchFrame>
+    </RunFrame>
   )
 }
