@@ -16,6 +16,7 @@ export default [
       route('cautions', 'routes/benches/cautions.tsx'),
       route('log', 'routes/benches/log.tsx'),
       route('planner', 'routes/benches/planner.tsx'),
+      route('stability', 'routes/benches/stability.tsx'),
       route('commands', 'routes/benches/commands.ts'),
       route('runs', 'routes/benches/runs.ts'),
       route('readings', 'routes/benches/readings.ts'),

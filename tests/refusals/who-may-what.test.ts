@@ -147,6 +147,7 @@ const table: Row[] = [
   ['POST', `${bench}/cautions`, [401, 404, 302, 302, 302]],
   ['GET', `${bench}/log`, [302, 404, 200, 200, 200]],
   ['GET', `${bench}/planner`, [302, 404, 200, 200, 200]],
+  ['GET', `${bench}/stability`, [302, 404, 200, 200, 200]],
   ['GET', `${bench}/commands`, [302, 302, 302, 302, 302]],
   ['POST', `${bench}/commands`, [401, 404, 200, 200, 200], { kind: 'take-controls' }],
   ['POST', `${bench}/commands`, [401, 404, 403, 200, 200], { kind: 'take-over' }],

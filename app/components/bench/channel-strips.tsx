@@ -1,3 +1,4 @@
+import { href, Link } from 'react-router'
 import { LiveStrip } from '#app/charts/live-strip.tsx'
 import type { BenchConfig } from '#app/protocol/bench-config.ts'
 import type { BenchState } from '#app/protocol/messages.ts'
@@ -53,7 +54,15 @@ export function ChannelStrips({ config, state }: { config: BenchConfig; state: B
           {dropped} samples are not drawn: this page could not keep up. Nothing is missing from a capture.
         </p>
       )}
-      <LastMinute benchId={config.benchId} rows={rows} />
+      <div className="flex flex-wrap items-start justify-between gap-x-5">
+        <LastMinute benchId={config.benchId} rows={rows} />
+        <Link
+          to={href('/benches/:benchId/stability', { benchId: config.benchId })}
+          className="link-alone py-1 text-[12.5px] text-ink-soft"
+        >
+          stability
+        </Link>
+      </div>
     </div>
   )
 }
