@@ -79,18 +79,30 @@ function split(text: string, delimiter: Delimiter): Row[] {
   }
 }
 
+/** From this part of the rows on that have as many columns as most, a delimiter is taken for the one. */
+const evenEnough = 0.8
+
 /** What gives most rows the same number of columns, two at least; the comma last, since it may be the decimal mark. */
 function guessDelimiter(text: string): Delimiter {
-  const order = ['tab', 'semicolon', 'comma'] as const
-  const [best] = order
-    .map((delimiter) => ({ delimiter, evenness: evennessOf(text, delimiter) }))
-    .sort((a, b) => b.evenness - a.evenness)
-  const first = order.find((delimiter) => evennessOf(text, delimiter) >= 0.8)
-  return first ?? best?.delimiter ?? 'comma'
+  const tried = (['tab', 'semicolon', 'comma'] as const).map((delimiter) => ({
+    delimiter,
+    evenness: evennessOf(text, delimiter),
+  }))
+  const found =
+    tried.find(({ evenness }) => evenness >= evenEnough) ??
+    tried.toSorted((a, b) => b.evenness - a.evenness)[0]
+  return found && found.evenness > 0 ? found.delimiter : 'comma'
 }
 
 function evennessOf(text: string, delimiter: Delimiter): number {
-  const counts = split(text, delimiter).map(({ cells }) => cells.length)
+  let counts: number[]
+  try {
+    counts = split(text, delimiter).map(({ cells }) => cells.length)
+  } catch (error) {
+    // Quotation marks that another delimiter explains.
+    if (error instanceof ImportRefused) return 0
+    throw error
+  }
   const usual = counts.toSorted((a, b) => a - b)[Math.floor(counts.length / 2)] ?? 0
   return usual < 2 ? 0 : counts.filter((count) => count === usual).length / counts.length
 }

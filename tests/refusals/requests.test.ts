@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
 import { localPath } from '#app/auth/local-path.ts'
 import { startSession } from '#app/auth/sessions.server.ts'
+import { largestImportBody } from '#app/imports/limits.ts'
 import { type AppHandler, startApp } from '#tests/support/app-handler.ts'
 import { type ClassSite, openClassSite } from '#tests/support/class-site.ts'
 import { ownDatabaseUrl } from '#tests/support/database.ts'
@@ -105,6 +106,8 @@ describe('A request that cannot be read', () => {
     const long = new URLSearchParams({ kind: 'take-controls', more: 'x'.repeat(70_000) })
     expect((await ask('/benches/bench-1/commands', { method: 'POST', body: long })).status).toBe(413)
     expect((await ask('/sign-in', { method: 'POST', body: long })).status).toBe(413)
+    const file = new URLSearchParams({ content: 'x'.repeat(largestImportBody) })
+    expect((await ask('/runs/import', { method: 'POST', body: file })).status).toBe(413)
     for (const path of ['/benches/bench-1/commands', '/api/bridge/spool']) {
       const body = new ReadableStream({
         start(controller) {

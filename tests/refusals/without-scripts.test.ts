@@ -88,6 +88,22 @@ describe('A form of a bench that a page without scripts sends', () => {
     expect(response.status).toBe(status)
   })
 
+  it('shows a file of readings on the page itself, and nothing in it is more than text', async () => {
+    const file =
+      'V,I,d (cm),<img src=x onerror=alert(1)>\n=HYPERLINK("http://elsewhere.test"),1.5,8.1,"<script>1</script>"\n'
+    const { response } = await post('/runs/import', {
+      content: Buffer.from(file).toString('base64'),
+      fileName: '<b>readings</b>.csv',
+      bench: 'bench-1',
+    })
+    expect(response.status).toBe(200)
+    const html = await response.text()
+    expect(html).toContain('is not a number')
+    expect(html).toContain('&lt;img src=x onerror=alert(1)&gt;')
+    expect(html).not.toMatch(/<img src=x|<b>readings|<script>1/)
+    expect(html).not.toMatch(/<a[^>]*elsewhere/)
+  })
+
   it('shows no words but the site’s own: a notice that is not signed is none', async () => {
     const cookie = (await startSession(site.student.id)).split(';')[0] ?? ''
     const forged = Buffer.from(JSON.stringify('Touch the leads.')).toString('base64')
