@@ -58,7 +58,7 @@ export function diagnosisWords(
 function findingWords({ finding, subsets }: Diagnosis): string[] {
   const plain = subsets.find(({ effects: wanted }) => wanted.length === 0)
   const fitWords = plain
-    ? `χ² is ${plain.chiSquared.toPrecision(3)} on ${plain.degreesOfFreedom}`
+    ? `χ² is ${plain.chiSquared >= 100 ? plain.chiSquared.toFixed(0) : plain.chiSquared.toPrecision(3)} on ${plain.degreesOfFreedom}`
     : 'no line can be fitted'
   switch (finding.kind) {
     case 'too-few':
@@ -98,25 +98,33 @@ function findingWords({ finding, subsets }: Diagnosis): string[] {
 function outlierWords({ outliers }: Diagnosis, numbers: readonly number[]): string[] {
   if (outliers.length === 0) return []
   const which = outliers.map(({ index }) => String(numbers[index] ?? index + 1))
-  const list =
-    which.length === 1
-      ? `Reading ${which[0]} lies`
-      : `Readings ${which.slice(0, -1).join(', ')} and ${which.at(-1)} lie`
+  const list = which.length === 1 ? `Reading ${which[0]} lies` : `Readings ${listed(which)} lie`
   return [
     `${list} far from the fit and ${which.length === 1 ? 'is' : 'are'} flagged. A flagged reading still counts: strike it only for a reason that was seen at the bench.`,
   ]
 }
 
-const quantityWords = { chargeToMass: 'e/m', ...effectWords }
-
 function apartWords({ notApart }: Diagnosis): string[] {
-  return notApart.map(
-    ({ a, b, correlation }) =>
-      `${capital(quantityWords[a])} and the ${quantityWords[b]} move together (correlation ${number(correlation, 2)}): these settings hardly tell one from the other.`,
-  )
+  const withValue = notApart.filter(({ a }) => a === 'chargeToMass')
+  const others = notApart.filter(({ a }) => a !== 'chargeToMass')
+  const size = (correlation: number) => number(correlation, 2)
+  return [
+    ...(withValue.length > 0
+      ? [
+          `e/m moves together with ${listed(withValue.map(({ b, correlation }) => `the ${effectWords[b]} (correlation ${size(correlation)})`))}: these settings hardly tell the one from the other.`,
+        ]
+      : []),
+    ...(others.length > 0
+      ? [
+          `So do ${listed(others.map(({ a, b, correlation }) => `the ${effectWords[a as Effect]} and the ${effectWords[b]} (${size(correlation)})`))}.`,
+        ]
+      : []),
+  ]
 }
 
-const capital = (text: string): string => (text === 'e/m' ? text : `The ${text}`)
+function listed(words: readonly string[]): string {
+  return words.length < 2 ? (words[0] ?? '') : `${words.slice(0, -1).join(', ')}, and ${words.at(-1)}`
+}
 
 /** True of all data of this kind. */
 const unseen = [

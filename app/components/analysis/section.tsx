@@ -28,7 +28,11 @@ export function Heads({ names }: { names: readonly string[] }) {
     <thead>
       <tr className="border-b border-ink text-[12.5px] text-ink-soft">
         {names.map((name, index) => (
-          <th key={name} scope="col" className={`px-2 py-1.5 font-normal ${index === 0 ? 'text-left' : ''}`}>
+          <th
+            key={name}
+            scope="col"
+            className={`py-1.5 font-normal ${index === 0 ? 'pr-2 text-left' : 'px-2'}`}
+          >
             {name}
           </th>
         ))}
