@@ -8,6 +8,7 @@ import { strikeReading } from '#app/runs/strike.server.ts'
 import { type ClassSite, openClassSite, outcome } from '#tests/support/class-site.ts'
 import { formRequest, ownDatabaseUrl, routeArgs, routeContext } from '#tests/support/database.ts'
 import { expectNear } from '#tests/support/near.ts'
+import { importClass } from '#tests/support/send-import.ts'
 import { spreadSettings, storeRun } from '#tests/support/stored-run.ts'
 
 vi.stubEnv('DATABASE_URL', ownDatabaseUrl())
@@ -156,6 +157,21 @@ describe('The analysis of a run', () => {
     const view = await analyse(runId, site.student)
     expect(view.comparison).toBeNull()
     expect(JSON.stringify(view)).not.toMatch(/accepted value|CODATA|1\.7588|175882/)
+  })
+
+  it('of the class readings, imported, states no value and says why, and staff see how far off their mean is', async () => {
+    const runId = await importClass(site.db, site.student)
+    const view = await analyse(runId, site.student)
+    expect(view.stated).toBeNull()
+    expectNear(view.mean?.value ?? 0, 1.2e11, { rel: 1e-3 })
+    expect(view.comparison).toBeNull()
+    const said = view.diagnosis?.finding.join(' ')
+    expect(said).toContain('No single line fits the readings: χ² is 106 on 23.')
+    expect(said).toMatch(/far too large: .*−240 ± 47 µT, .*73\.3 ± 4\.9 V, .*−48\.4 ± 6\.3 mm/)
+    expect(view.diagnosis?.checks.length).toBeGreaterThan(3)
+    expect((await analyse(runId, site.instructor)).comparison?.sentence).toContain(
+      '32 % below the accepted value',
+    )
   })
 
   it('is not found by a student who took no part', async () => {

@@ -9,12 +9,7 @@ import { expandedInElevens, inElevens, percent } from './figures.ts'
 export function Statement({ view }: { view: AnalysisView }) {
   const { stated, run, comparison } = view
   const fetcher = useFetcher<ActionReply>()
-  if (!stated)
-    return (
-      <p className="max-w-prose">
-        No value of e/m is stated yet. <span className="text-ink-soft">{view.reductions.join(' ')}</span>
-      </p>
-    )
+  if (!stated) return <NothingStated view={view} />
   return (
     <div className="grid grid-cols-1 gap-2">
       <p className="text-[26px] leading-tight font-bold text-beam sm:text-[32px]">
@@ -53,6 +48,21 @@ export function Statement({ view }: { view: AnalysisView }) {
         </button>
         <AnswerLine reply={fetcher.data} className="text-ink-soft" />
       </fetcher.Form>
+    </div>
+  )
+}
+
+/** Why there is no value: nothing to fit, or nothing that explains the readings. */
+function NothingStated({ view: { mean, diagnosis, reductions, comparison } }: { view: AnalysisView }) {
+  return (
+    <div className="grid max-w-prose gap-2">
+      <p>
+        {diagnosis && mean
+          ? `No corrected value is stated, for nothing plausible explains these readings. Their plain mean is ${(mean.value / 1e11).toFixed(3)} × 10¹¹ C/kg, which is no result.`
+          : 'No value of e/m is stated yet.'}{' '}
+        <span className="text-ink-soft">{reductions.join(' ')}</span>
+      </p>
+      {comparison && <p className="border-l-2 border-ink pl-3">{comparison.sentence}</p>}
     </div>
   )
 }
