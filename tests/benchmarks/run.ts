@@ -1,3 +1,4 @@
+import { analysisPageFigures } from './analysis-page.ts'
 import { budgetFigures } from './budget.ts'
 import { diagnosisFigures } from './diagnosis.ts'
 import { fieldFigures } from './field.ts'
@@ -5,8 +6,14 @@ import { isShort, lineOf } from './measure.ts'
 import { monteCarloFigures } from './monte-carlo.ts'
 
 let hasShort = false
-for (const figuresOf of [budgetFigures, fieldFigures, monteCarloFigures, diagnosisFigures]) {
-  for (const figure of figuresOf()) {
+for (const figuresOf of [
+  budgetFigures,
+  fieldFigures,
+  monteCarloFigures,
+  diagnosisFigures,
+  analysisPageFigures,
+]) {
+  for (const figure of await figuresOf()) {
     console.log(lineOf(figure))
     hasShort ||= isShort(figure)
   }
