@@ -3,10 +3,26 @@ import { join } from 'node:path'
 import { eq } from 'drizzle-orm'
 import { openDatabase } from '#app/db/client.server.ts'
 import { people } from '#app/db/schema.ts'
+import { startRun } from '#app/runs/runs.server.ts'
 import { spreadSettings, storeRun } from '#tests/support/stored-run.ts'
 import { expect, expectAccessible, test } from './fixtures.ts'
 
 const pictures = 'test-results/pictures'
+
+/** The database of the site, the student, and what leaves bench 1 with a run that has no reading yet. */
+async function open(url: string) {
+  const db = await openDatabase(url)
+  const student = await db.query.people.findFirst({ where: eq(people.email, 'student@lab.test') })
+  const personId = student?.id ?? ''
+  return {
+    db,
+    personId,
+    async leave() {
+      await startRun(db, { benchId: 'bench-1', personId })
+      db.$client.close()
+    },
+  }
+}
 
 test('A student reads the analysis of a run: value, cause, lines, budget, Monte Carlo, and what to measure next', async ({
   site,
@@ -14,15 +30,13 @@ test('A student reads the analysis of a run: value, cause, lines, budget, Monte 
 }) => {
   test.setTimeout(240_000)
   mkdirSync(pictures, { recursive: true })
-  const db = await openDatabase(site.databaseUrl)
-  const student = await db.query.people.findFirst({ where: eq(people.email, 'student@lab.test') })
+  const { db, personId, leave } = await open(site.databaseUrl)
   const runId = await storeRun(db, {
-    personId: student?.id ?? '',
+    personId,
     settings: [...spreadSettings, ...spreadSettings],
     truth: { strayFieldTesla: 55e-6 },
     edgeMetres: 0.15e-3,
   })
-  db.$client.close()
   const page = await signInAs('student', { path: '/benches/bench-1' })
   await page.getByRole('link', { name: 'Analysis of this run' }).click()
   await page.waitForURL(`**/runs/${runId}/analysis`)
@@ -81,16 +95,15 @@ test('A student reads the analysis of a run: value, cause, lines, budget, Monte 
         await expectAccessible(page)
       }
   })
+  await leave()
 })
 
 test('An instructor sees how a run stands to the accepted value, and takes further settings into its plan', async ({
   site,
   signInAs,
 }) => {
-  const db = await openDatabase(site.databaseUrl)
-  const student = await db.query.people.findFirst({ where: eq(people.email, 'student@lab.test') })
-  const runId = await storeRun(db, { personId: student?.id ?? '', settings: spreadSettings.slice(3, 8) })
-  db.$client.close()
+  const { db, personId, leave } = await open(site.databaseUrl)
+  const runId = await storeRun(db, { personId, settings: spreadSettings.slice(3, 8) })
   const page = await signInAs('instructor', { path: `/runs/${runId}/analysis` })
   await expect(page.getByText(/% (above|below) the accepted value, ζ = /)).toBeVisible()
   await page.getByRole('button', { name: 'Add to the plan of this run' }).click()
@@ -98,16 +111,15 @@ test('An instructor sees how a run stands to the accepted value, and takes furth
   await expect(page.getByRole('heading', { name: 'Planned' })).toBeVisible()
   await page.getByRole('button', { name: 'take off' }).first().click()
   await expect(page.getByText('Taken off the plan.').first()).toBeVisible()
+  await leave()
 })
 
 test('A student plans settings with the value of the run, and takes them into its plan', async ({
   site,
   signInAs,
 }) => {
-  const db = await openDatabase(site.databaseUrl)
-  const student = await db.query.people.findFirst({ where: eq(people.email, 'student@lab.test') })
-  await storeRun(db, { personId: student?.id ?? '', settings: spreadSettings.slice(0, 4) })
-  db.$client.close()
+  const { db, personId, leave } = await open(site.databaseUrl)
+  await storeRun(db, { personId, settings: spreadSettings.slice(0, 4) })
   const page = await signInAs('student', { path: '/benches/bench-1' })
   await page.getByRole('link', { name: 'Planner' }).click()
   await expect(page.getByRole('heading', { name: 'Planner for Bench 1' })).toBeVisible()
@@ -130,6 +142,7 @@ test('A student plans settings with the value of the run, and takes them into it
       expect(overflow, 'sideways scroll in px').toBeLessThanOrEqual(0)
       await expectAccessible(page)
     }
+  await leave()
 })
 
 test('What the browser loads does not hold the accepted value', async () => {

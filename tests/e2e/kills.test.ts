@@ -144,11 +144,12 @@ async function tripsStored(site: Site, benchId: string): Promise<number> {
   return Number(rows[0]?.trips)
 }
 
-/** Numbers of the bench's readings in the database of the app. */
+/** Numbers of the readings of the bench's open run in the database of the app. */
 async function readingsStored(site: Site, benchId: string): Promise<number[]> {
   const database = createClient({ url: site.databaseUrl })
   const { rows } = await database.execute({
-    sql: 'select number from readings where bench_id = ? order by number',
+    sql: `select number from readings where run_id in
+      (select id from runs where bench_id = ? and ended_at is null) order by number`,
     args: [benchId],
   })
   database.close()
