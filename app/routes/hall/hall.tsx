@@ -111,7 +111,7 @@ function LinkLine() {
 
 /** How much room a tile has: four rows of six fit on a 1080p screen, and three do not look lost on it. */
 function crowdOf(benches: number): 'few' | 'some' | 'many' {
-  if (benches <= 4) return 'few'
+  if (benches <= 3) return 'few'
   return benches <= 12 ? 'some' : 'many'
 }
 
