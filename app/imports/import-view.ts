@@ -29,6 +29,8 @@ export type ImportPreview = {
   /** The file itself in base64: it goes along with the form. */
   content: string
   choice: ImportChoice
+  /** Of file and choice together: what is stored is what was shown. */
+  shown: string
   delimiter: 'tab' | 'semicolon' | 'comma'
   decimal: '.' | ','
   headingRow: number
@@ -48,4 +50,6 @@ export type ImportReply = {
   /** What is wrong with the file, beside its field. */
   fileErrors: string[]
   preview: ImportPreview | null
+  /** Something was chosen or typed after what was shown last: it was not stored, and is shown now. */
+  hasChanged: boolean
 }

@@ -1,7 +1,8 @@
+import { createHash } from 'node:crypto'
 import { readForm } from '../auth/request-body.server.ts'
 import { listVisibleBenches, type Watcher } from '../benches/visible-benches.server.ts'
 import type { Database } from '../db/client.server.ts'
-import { readChoice } from './form.ts'
+import { type ImportChoice, readChoice } from './form.ts'
 import { ImportRefused } from './import-refused.ts'
 import type { ImportBench, ImportPreview, ImportReply, PreviewRow } from './import-view.ts'
 import { type LookedAt, lookAt } from './preview.server.ts'
@@ -29,7 +30,7 @@ export async function listImportBenches(db: Database, person: Watcher): Promise<
 
 /**
  * One step of an import: looks at the file with what is chosen, or with the intent `store` stores its good rows as a run
- * of this person's own. The file comes along each time, so that nothing is kept before it is confirmed. Throws a 404 for
+ * of this person's own, when they were shown as they are. The file comes along each time, so that nothing is kept before it is confirmed. Throws a 404 for
  * a bench that this person may not watch.
  */
 export async function importReadings(
@@ -43,12 +44,14 @@ export async function importReadings(
     looked = await lookAt(db, { file, choice: readChoice(form), person })
   } catch (error) {
     if (!(error instanceof ImportRefused)) throw error
-    return { status: 400, reply: { fileErrors: [error.message], preview: null } }
+    return { status: 400, reply: { fileErrors: [error.message], preview: null, hasChanged: false } }
   }
   const preview = previewOf(looked)
-  if (form.get('intent') !== 'store') return { status: 200, reply: { fileErrors: [], preview } }
-  if (looked.problems.length > 0 || looked.good.length === 0)
-    return { status: 400, reply: { fileErrors: [], preview } }
+  if (form.get('intent') !== 'store')
+    return { status: 200, reply: { fileErrors: [], preview, hasChanged: false } }
+  const hasChanged = form.get('shown') !== preview.shown
+  if (hasChanged || looked.problems.length > 0 || looked.good.length === 0)
+    return { status: 400, reply: { fileErrors: [], preview, hasChanged } }
   return { runId: await storeImport(db, { looked, personId: person.id }) }
 }
 
@@ -59,6 +62,7 @@ function previewOf({ file, table, choice, problems, good, bad, before }: LookedA
     digest: file.digest,
     content: Buffer.from(file.bytes).toString('base64'),
     choice,
+    shown: fingerprint(file.digest, choice),
     delimiter: table.delimiter,
     decimal: table.decimal,
     headingRow: table.headingRow,
@@ -74,6 +78,12 @@ function previewOf({ file, table, choice, problems, good, bad, before }: LookedA
     before,
   }
 }
+
+const fingerprint = (digest: string, choice: ImportChoice) =>
+  createHash('sha256')
+    .update(JSON.stringify([digest, choice]))
+    .digest('hex')
+    .slice(0, 16)
 
 function toRow(row: ImportedRow): PreviewRow {
   const { rung, stated } = storedValues(row)

@@ -1,5 +1,5 @@
 import { ImportRefused } from './import-refused.ts'
-import { largestCsvBytes } from './limits.ts'
+import { largestCsvBytes, tooManyBytes } from './limits.ts'
 
 /** Besides tab and ends of lines, text has none of these. */
 // biome-ignore lint/suspicious/noControlCharactersInRegex: they are what is looked for
@@ -13,10 +13,7 @@ const controlCharacters = /[\u0000-\u0008\u000b\u000c\u000e-\u001f\u007f]/
  */
 export function decodeText(bytes: Uint8Array): string {
   if (bytes.byteLength === 0) throw new ImportRefused('This file is empty.')
-  if (bytes.byteLength > largestCsvBytes)
-    throw new ImportRefused(
-      `This file has ${Math.ceil(bytes.byteLength / 1000)} thousand bytes. A file of readings may have ${largestCsvBytes / 1000} thousand: leave out what is not needed, or send it in parts.`,
-    )
+  if (bytes.byteLength > largestCsvBytes) throw new ImportRefused(tooManyBytes(bytes.byteLength))
   const text = decode(bytes)
   if (controlCharacters.test(text))
     throw new ImportRefused(

@@ -174,7 +174,9 @@ const table: Row[] = [
   // The run of the student's partner, in which the student took no part.
   ['GET', '/runs', [302, 200, 200, 200, 200]],
   ['GET', '/runs/import', [302, 200, 200, 200, 200]],
-  ['POST', '/runs/import', [401, 404, 302, 302, 302], { ...sentReadings, intent: 'store' }],
+  ['POST', '/runs/import', [401, 404, 200, 200, 200], sentReadings],
+  // Stored is only what was shown before.
+  ['POST', '/runs/import', [401, 404, 400, 400, 400], { ...sentReadings, intent: 'store' }],
   // A run that was measured here was imported from no file.
   ['GET', '/runs/:runId/imported', [302, 404, 404, 404, 404]],
   ['POST', '/runs/:runId/imported', [401, 404, 404, 404, 404], { reason: 'Read badly.' }],
@@ -197,7 +199,8 @@ const table: Row[] = [
   ['POST', '/*', [405, 405, 405, 405, 405]],
 ]
 
-const titleOf = ([method, route, , fields]: Row) => [method, route, fields?.kind ?? ''].join(' ').trim()
+const titleOf = ([method, route, , fields]: Row) =>
+  [method, route, fields?.kind ?? fields?.intent ?? ''].join(' ').trim()
 const pathOf = (route: string) => route.replace(':benchId', 'bench-1')
 
 type Entry = { path?: string; index?: boolean; children?: Entry[] }

@@ -23,7 +23,9 @@ import {
   clearRuns,
   type Fields,
   importClass,
+  importFile,
   sendImport,
+  storeShown,
 } from '#tests/support/send-import.ts'
 
 let site: ClassSite
@@ -52,17 +54,8 @@ async function look(text: string, fields: Fields = {}): Promise<ImportPreview> {
   return reply.preview
 }
 
-/** The step after `look`: the file comes along in the form, with what the page shows as chosen. */
-const store = (preview: ImportPreview, fields: Fields = {}, person = site.student) =>
-  send(person, null, {
-    intent: 'store',
-    content: preview.content,
-    fileName: preview.fileName,
-    seen: preview.choice.seen,
-    role: preview.choice.columns.map((column) => column?.role ?? ''),
-    unit: preview.choice.columns.map((column) => column?.unit ?? ''),
-    ...fields,
-  })
+const store = (preview: ImportPreview, fields: Fields = {}) =>
+  storeShown(site.db, site.student, preview, fields)
 
 describe('The 24 readings of a class, with a field of their own', () => {
   it('become a run of the person’s own, marked imported, with the file’s name and digest', async () => {
@@ -149,9 +142,12 @@ describe('Looking at a file', () => {
     expect((await store(preview)).status).toBe(400)
     expect((await store(preview, { bench: 'bench-1' })).status).toBe(400)
     expect(await stored()).toEqual(nothing)
-    const role = ['voltage', 'current', 'diameter']
-    const { status } = await store(preview, { bench: 'bench-1', role, unit: ['V', 'A', 'cm'] })
-    expect(status).toBe(302)
+    const chosen = { bench: 'bench-1', role: ['voltage', 'current', 'diameter'], unit: ['V', 'A', 'cm'] }
+    const changed = await store(preview, chosen)
+    expect([changed.status, changed.reply?.hasChanged]).toEqual([400, true])
+    expect(await stored()).toEqual(nothing)
+    if (!changed.reply?.preview) throw new Error('Nothing was shown')
+    expect((await store(changed.reply.preview)).status).toBe(302)
     expect((await stored()).readings).toBe(1)
   })
 
@@ -164,7 +160,7 @@ describe('Looking at a file', () => {
   ])('does not take the field factor %j', async (fields, words) => {
     const preview = await look(classCsv, { ...classFields, ...fields })
     expect(preview.problems.join()).toContain(words)
-    expect((await store(preview, { ...classFields, ...fields })).status).toBe(400)
+    expect((await store(preview)).status).toBe(400)
     expect(await stored()).toEqual(nothing)
   })
 
@@ -205,7 +201,7 @@ describe('Bad rows', () => {
         reasons: ['these values give no orbit of Bench 1: look at the units'],
       },
     ])
-    expect((await store(preview, { bench: 'bench-1' })).status).toBe(302)
+    expect((await store(preview)).status).toBe(302)
     const [file] = await site.db.select().from(imports)
     expect([file?.rowsLeftOut, (await stored()).readings]).toEqual([3, 2])
   })
@@ -213,7 +209,7 @@ describe('Bad rows', () => {
   it('alone leave nothing to be stored', async () => {
     const preview = await look('V,I,d (cm)\nNaN,1.54,8.1\n', { bench: 'bench-1' })
     expect(preview).toMatchObject({ goodCount: 0, badCount: 1, problems: [] })
-    expect((await store(preview, { bench: 'bench-1' })).status).toBe(400)
+    expect((await store(preview)).status).toBe(400)
     expect(await stored()).toEqual(nothing)
   })
 })
@@ -221,7 +217,7 @@ describe('Bad rows', () => {
 describe('Readings that use the data of a bench', () => {
   const text = 'V,I,d (cm)\n200,2.2,7.20\n'
   const importOn = async (bench: string, fields: Fields = {}, file = text) => {
-    const { status, runId } = await send(site.student, csv(file), { bench, intent: 'store', ...fields })
+    const { status, runId } = await importFile(site.db, site.student, csv(file), { bench, ...fields })
     expect(status).toBe(302)
     const { readings: rows, file: kept } = await loadImportedRun(site.db, { runId, person: site.student })
     return { runId, rows, kept }
@@ -338,10 +334,7 @@ describe('What a file brings along', () => {
 
   it('is read anew from the bytes at the last step, whatever the form says of it', async () => {
     const preview = await look(classCsv, classFields)
-    const { status } = await store(
-      { ...preview, digest: 'forged' },
-      { ...classFields, digest: 'forged', goodCount: '1' },
-    )
+    const { status } = await store(preview, { digest: 'forged', goodCount: '1' })
     expect(status).toBe(302)
     const [file] = await site.db.select().from(imports)
     expect(file?.digest).toBe(preview.digest)

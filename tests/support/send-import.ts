@@ -2,7 +2,7 @@ import { readFileSync } from 'node:fs'
 import { sql } from 'drizzle-orm'
 import type { Person } from '#app/context.ts'
 import type { Database } from '#app/db/client.server.ts'
-import type { ImportReply } from '#app/imports/import-view.ts'
+import type { ImportPreview, ImportReply } from '#app/imports/import-view.ts'
 import { action } from '#app/routes/runs/import.tsx'
 import { outcome } from './class-site.ts'
 import { routeArgs, routeContext } from './database.ts'
@@ -61,10 +61,55 @@ export async function sendImport(
   return { status, runId: '', reply: reply as ImportReply }
 }
 
+/** The step after a look: the file comes along in the form, with what the page shows as chosen. */
+export function storeShown(
+  db: Database,
+  person: Person,
+  { content, fileName, choice, shown }: ImportPreview,
+  fields: Fields = {},
+): ReturnType<typeof sendImport> {
+  return sendImport(db, person, null, {
+    intent: 'store',
+    content,
+    fileName,
+    shown,
+    seen: choice.seen,
+    bench: choice.bench,
+    teslaPerAmp: choice.teslaPerAmp,
+    uTeslaPerAmp: choice.uTeslaPerAmp,
+    allVoltage: choice.forAll.voltage,
+    allCurrent: choice.forAll.current,
+    allLength: choice.forAll.length,
+    statedAs: choice.statedAs,
+    reads: choice.isOnScale ? 'scale' : 'beam',
+    delimiter: choice.delimiter,
+    decimal: choice.decimal,
+    headingRow: String(choice.headingRow),
+    role: choice.columns.map((column) => column?.role ?? ''),
+    unit: choice.columns.map((column) => column?.unit ?? ''),
+    ...fields,
+  })
+}
+
+/** Looks at a file and stores what is shown. */
+export async function importFile(
+  db: Database,
+  person: Person,
+  file: { name: string; text: string },
+  fields: Fields = {},
+): ReturnType<typeof sendImport> {
+  const looked = await sendImport(db, person, file, fields)
+  return looked.reply?.preview ? storeShown(db, person, looked.reply.preview) : looked
+}
+
 /** Imports the class's readings as a run of this person's. */
 export async function importClass(db: Database, person: Person): Promise<string> {
-  const file = { name: 'measurements.csv', text: classCsv }
-  const { status, runId } = await sendImport(db, person, file, { ...classFields, intent: 'store' })
+  const { status, runId } = await importFile(
+    db,
+    person,
+    { name: 'measurements.csv', text: classCsv },
+    classFields,
+  )
   if (status !== 302) throw new Error(`The import was answered with ${status}`)
   return runId
 }

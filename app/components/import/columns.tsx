@@ -36,7 +36,6 @@ function Column({ name, column }: { name: string; column: ColumnMapping | null }
   return (
     <div className="grid grid-cols-[minmax(0,1fr)_6.5rem] gap-2">
       <Select
-        key={column?.role ?? ''}
         name="role"
         label={`What ${name} holds`}
         isLabelHidden
@@ -45,7 +44,7 @@ function Column({ name, column }: { name: string; column: ColumnMapping | null }
       />
       {column ? (
         <Select
-          key={`${column.role} ${column.unit}`}
+          key={column.role}
           name="unit"
           label={`Unit of ${name}`}
           isLabelHidden

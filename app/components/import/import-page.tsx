@@ -2,7 +2,7 @@ import { useRef, useState } from 'react'
 import { useFetcher } from 'react-router'
 import type { ActionReply } from '#app/benches/action-reply.ts'
 import type { ImportBench, ImportReply } from '#app/imports/import-view.ts'
-import { largestCsvBytes } from '#app/imports/limits.ts'
+import { largestCsvBytes, tooManyBytes } from '#app/imports/limits.ts'
 import { AnswerLine } from '../answer-line.tsx'
 import { Columns } from './columns.tsx'
 import { FieldChoice } from './field-choice.tsx'
@@ -27,16 +27,13 @@ export function ImportPage({ benches, answered }: Props) {
   const fileErrors = tooLarge ? [tooLarge] : hasPreview(reply) ? reply.fileErrors : []
   const preview = last
   const isBusy = fetcher.state !== 'idle'
+  const isStoring = isBusy && fetcher.formData?.get('intent') === 'store'
 
   /** A file that the server would not even read is refused here; anything else is the server's to judge. */
   function refuseTooLarge(event: React.SubmitEvent<HTMLFormElement>) {
     const file = new FormData(event.currentTarget).get('file')
     const isTooLarge = file instanceof File && file.size > largestCsvBytes
-    setTooLarge(
-      isTooLarge
-        ? `This file has ${Math.ceil(file.size / 1000)} thousand bytes. A file of readings may have ${largestCsvBytes / 1000} thousand: leave out what is not needed, or send it in parts.`
-        : null,
-    )
+    setTooLarge(isTooLarge ? tooManyBytes(file.size) : null)
     if (isTooLarge) event.preventDefault()
   }
   const lookAgain = () => form.current?.requestSubmit()
@@ -60,11 +57,16 @@ export function ImportPage({ benches, answered }: Props) {
         <div key={preview.choice.seen} className="contents" onChange={changedAtOnce(lookAgain)}>
           <input type="hidden" name="content" value={preview.content} />
           <input type="hidden" name="fileName" value={preview.fileName} />
+          <input type="hidden" name="shown" value={preview.shown} />
           <input type="hidden" name="seen" value={preview.choice.seen} />
           <FieldChoice benches={benches} choice={preview.choice} />
           <Columns preview={preview} />
           <Reading preview={preview} benches={benches} />
-          <Outcome preview={preview} isBusy={isBusy} />
+          <Outcome
+            preview={preview}
+            hasChanged={hasPreview(reply) && reply.hasChanged}
+            isStoring={isStoring}
+          />
         </div>
       )}
       {!hasPreview(reply) && <AnswerLine reply={reply} />}

@@ -4,8 +4,10 @@ import { withUncertainty } from '../figures.ts'
 import { LocalTime } from '../local-time.tsx'
 import { ImportSection } from './import-section.tsx'
 
+type Props = { preview: ImportPreview; hasChanged: boolean; isStoring: boolean }
+
 /** What would be stored and what not, with the reason beside each, and the button that stores it. */
-export function Outcome({ preview, isBusy }: { preview: ImportPreview; isBusy: boolean }) {
+export function Outcome({ preview, hasChanged, isStoring }: Props) {
   const { problems, goodCount, bad, badCount, rows, before } = preview
   const isReady = problems.length === 0 && goodCount > 0
   return (
@@ -35,12 +37,17 @@ export function Outcome({ preview, isBusy }: { preview: ImportPreview; isBusy: b
           . It would become another run.
         </p>
       )}
+      {hasChanged && (
+        <p role="alert" className="font-medium">
+          Something was changed since these rows were shown, so nothing was stored. Look at them once more.
+        </p>
+      )}
       <div className="flex flex-wrap items-center gap-x-4 gap-y-2">
         <button
           type="submit"
           name="intent"
           value="store"
-          disabled={!isReady || isBusy}
+          disabled={!isReady || isStoring}
           className="button button-main max-sm:w-full"
         >
           Import {goodCount} {goodCount === 1 ? 'reading' : 'readings'}
