@@ -1,13 +1,12 @@
-import { mkdirSync, readdirSync, readFileSync } from 'node:fs'
+import { readdirSync, readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { eq } from 'drizzle-orm'
 import { openDatabase } from '#app/db/client.server.ts'
 import { people } from '#app/db/schema.ts'
 import { startRun } from '#app/runs/runs.server.ts'
 import { spreadSettings, storeRun } from '#tests/support/stored-run.ts'
+import { expectEveryLook } from './every-look.ts'
 import { expect, expectAccessible, test } from './fixtures.ts'
-
-const pictures = 'test-results/pictures'
 
 /** The database of the site, the student, and what leaves bench 1 with a run that has no reading yet. */
 async function open(url: string) {
@@ -29,7 +28,6 @@ test('A student reads the analysis of a run: value, cause, lines, budget, Monte 
   signInAs,
 }) => {
   test.setTimeout(240_000)
-  mkdirSync(pictures, { recursive: true })
   const { db, personId, leave } = await open(site.databaseUrl)
   const runId = await storeRun(db, {
     personId,
@@ -81,19 +79,7 @@ test('A student reads the analysis of a run: value, cause, lines, budget, Monte 
   })
 
   await test.step('stands in both lights, on a phone and on a projector', async () => {
-    for (const light of ['dark', 'lit'] as const)
-      for (const size of [
-        { name: '360', width: 360, height: 800 },
-        { name: '1080p', width: 1920, height: 1080 },
-      ]) {
-        await page.setViewportSize(size)
-        await page.getByRole('button', { name: light, exact: true }).click()
-        await expect(page.locator('html')).toHaveAttribute('data-light', light)
-        const overflow = await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
-        await page.screenshot({ path: `${pictures}/analysis-${light}-${size.name}.png`, fullPage: true })
-        expect(overflow, 'sideways scroll in px').toBeLessThanOrEqual(0)
-        await expectAccessible(page)
-      }
+    await expectEveryLook(page, 'analysis')
   })
   await leave()
 })
@@ -129,19 +115,7 @@ test('A student plans settings with the value of the run, and takes them into it
   await page.waitForURL(/count=5/)
   await page.getByRole('button', { name: 'Take into the plan of the open run' }).click()
   await expect(page.getByText(/added to the plan/i)).toBeVisible()
-  for (const light of ['dark', 'lit'] as const)
-    for (const size of [
-      { name: '360', width: 360, height: 800 },
-      { name: '1080p', width: 1920, height: 1080 },
-    ]) {
-      await page.setViewportSize(size)
-      await page.getByRole('button', { name: light, exact: true }).click()
-      await expect(page.locator('html')).toHaveAttribute('data-light', light)
-      const overflow = await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
-      await page.screenshot({ path: `${pictures}/planner-${light}-${size.name}.png`, fullPage: true })
-      expect(overflow, 'sideways scroll in px').toBeLessThanOrEqual(0)
-      await expectAccessible(page)
-    }
+  await expectEveryLook(page, 'planner')
   await leave()
 })
 

@@ -1,12 +1,9 @@
-import { mkdirSync } from 'node:fs'
-import { expect, expectAccessible, test } from './fixtures.ts'
-
-const pictures = 'test-results/pictures'
+import { expectEveryLook } from './every-look.ts'
+import { expect, test } from './fixtures.ts'
 
 test('A technician sees how long a channel is best averaged, whether it drifts, and where the coils go', async ({
   signInAs,
 }) => {
-  mkdirSync(pictures, { recursive: true })
   const page = await signInAs('technician', { path: '/benches/bench-3' })
   await page.getByRole('link', { name: 'stability', exact: true }).click()
   await expect(page.getByRole('heading', { name: 'Stability of Bench 3' })).toBeVisible()
@@ -20,17 +17,5 @@ test('A technician sees how long a channel is best averaged, whether it drifts, 
   await expect(page.getByText(/No trend is told|It (rises|falls) by/)).toBeVisible()
   await page.getByText('as a table').click()
   await expect(page.getByRole('columnheader', { name: 'averaging time, s' })).toBeVisible()
-  for (const light of ['dark', 'lit'] as const)
-    for (const size of [
-      { name: '360', width: 360, height: 800 },
-      { name: '1080p', width: 1920, height: 1080 },
-    ]) {
-      await page.setViewportSize(size)
-      await page.getByRole('button', { name: light, exact: true }).click()
-      await expect(page.locator('html')).toHaveAttribute('data-light', light)
-      const overflow = await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
-      await page.screenshot({ path: `${pictures}/stability-${light}-${size.name}.png`, fullPage: true })
-      expect(overflow, 'sideways scroll in px').toBeLessThanOrEqual(0)
-      await expectAccessible(page)
-    }
+  await expectEveryLook(page, 'stability')
 })
