@@ -43,6 +43,7 @@ const pure: Record<string, string[]> = {
   'app/statistics': [],
   'app/metrology': ['app/statistics'],
   'app/analysis': ['app/physics', 'app/statistics', 'app/metrology'],
+  'app/relation': ['app/physics', 'mathjs'],
   'app/safety': [],
   'app/protocol': ['app/safety', 'zod'],
 }

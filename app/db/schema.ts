@@ -4,6 +4,7 @@ import type { FieldFactor } from '../analysis/reading.ts'
 import type { ImportMapping } from '../imports/mapping.ts'
 import type { CommissionedBench, TypedBench } from '../protocol/bench-config.ts'
 import type { ChannelStatus } from '../protocol/messages.ts'
+import type { Symbols } from '../relation/quantities.ts'
 
 const id = () =>
   text()
@@ -434,4 +435,25 @@ export const statements = sqliteTable(
     statedAt: createdAt(),
   },
   (table) => [index('statements_run').on(table.runId)],
+)
+
+/** A person's own formula for e/m that held when it was checked, with what each of its symbols stands for. */
+export const relations = sqliteTable(
+  'relations',
+  {
+    id: id(),
+    personId: text()
+      .notNull()
+      .references(() => people.id),
+    /** Where it was checked. It belongs to no bench: with the coils of any it gives a value. */
+    benchId: text()
+      .notNull()
+      .references(() => benches.id),
+    text: text().notNull(),
+    symbols: text({ mode: 'json' }).$type<Symbols>().notNull(),
+    /** Of the settings that it was checked at. */
+    seed: integer().notNull(),
+    checkedAt: createdAt(),
+  },
+  (table) => [index('relations_person').on(table.personId, table.checkedAt)],
 )
