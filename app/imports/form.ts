@@ -1,5 +1,7 @@
 import * as z from 'zod'
-import { type ColumnMapping, type Role, roles, type StatedAs } from './mapping.ts'
+import { unitInCells } from './cell.ts'
+import { largestColumns } from './limits.ts'
+import { type ColumnMapping, type Role, roles, type StatedAs, unitsOf } from './mapping.ts'
 
 /** In place of a bench's id: the run states a field factor of its own. */
 export const ownField = 'own'
@@ -28,7 +30,12 @@ const choiceSchema = z.object({
   uTeslaPerAmp: short,
   delimiter: z.enum(['auto', 'tab', 'semicolon', 'comma']).catch('auto'),
   decimal: z.enum(['auto', '.', ',']).catch('auto'),
-  headingRow: z.coerce.number().int().min(0).max(60).catch(Number.NaN),
+  headingRow: z
+    .string()
+    .regex(/^\d{1,2}$/)
+    .transform(Number)
+    .or(z.literal('auto'))
+    .catch('auto'),
   allVoltage: short,
   allCurrent: short,
   allLength: short,
@@ -39,21 +46,24 @@ const choiceSchema = z.object({
 
 /** The choices of a form, with what no page sends taken for not chosen. */
 export function readChoice(form: FormData): ImportChoice {
-  const { allVoltage, allCurrent, allLength, reads, headingRow, ...rest } = choiceSchema.parse(
+  const { allVoltage, allCurrent, allLength, reads, ...rest } = choiceSchema.parse(
     Object.fromEntries([...form].filter(([, value]) => typeof value === 'string')),
   )
-  const { headingRow: typed } = Object.fromEntries(form)
+  const units = form.getAll('unit')
   return {
     ...rest,
-    headingRow:
-      typeof typed === 'string' && /^\d/.test(typed) && !Number.isNaN(headingRow) ? headingRow : 'auto',
     forAll: { voltage: allVoltage, current: allCurrent, length: allLength },
     isOnScale: reads === 'scale',
-    columns: form.getAll('role').map((role, i) => readColumn(role, form.getAll('unit')[i])),
+    columns: form
+      .getAll('role')
+      .slice(0, largestColumns)
+      .map((role, i) => readColumn(role, units[i])),
   }
 }
 
 function readColumn(role: unknown, unit: unknown): ColumnMapping | null {
   const known = roles.find((it): it is Role => it === role)
-  return known ? { role: known, unit: typeof unit === 'string' ? unit : '' } : null
+  if (!known) return null
+  const isUnit = typeof unit === 'string' && (unit === unitInCells || Object.hasOwn(unitsOf[known], unit))
+  return { role: known, unit: isUnit ? unit : '' }
 }
