@@ -19,3 +19,7 @@ export function requireRuler({ scale }: Scaled): RulerScale {
     throw data('This bench is read at its rungs: a photo of it is not measured.', { status: 404 })
   return scale
 }
+
+/** What there is to do once voltage and current of a reading are stored, while the beam stands. */
+export const nextWords = ({ scale }: Scaled): string =>
+  scale.kind === 'rungs' ? 'Now choose the rung that the beam meets.' : 'Now read both edges.'

@@ -1,6 +1,7 @@
 import { and, eq, max } from 'drizzle-orm'
 import { type Answered, done, noInstruments, ownCodes, refused } from '../benches/action-reply.ts'
 import { resolveActor } from '../benches/actor.server.ts'
+import { nextWords } from '../benches/scale.ts'
 import { requireVisibleBench } from '../benches/visible-benches.server.ts'
 import { askCapture } from '../bridge-link/bridge-client.server.ts'
 import type { Person } from '../context.ts'
@@ -32,7 +33,7 @@ export async function captureReading(
   const fault = await findFault(db, benchId, answer.reply.capture)
   if (fault) return { status: 503, reply: refused({ code: ownCodes.bridgeSilent, sentence: fault }) }
   const number = await storeCapture(db, { capture: answer.reply.capture, personId: person.id })
-  return { status: 200, reply: done(`Captured as reading ${number}. Now read both edges.`) }
+  return { status: 200, reply: done(`Captured as reading ${number}. ${nextWords(config)}`) }
 }
 
 /** Why a window cannot become a reading, in a sentence, or null. */

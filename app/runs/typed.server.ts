@@ -1,6 +1,7 @@
 import { eq, max } from 'drizzle-orm'
 import * as z from 'zod'
 import { type Answered, done, fieldErrors, ownCodes, refused } from '../benches/action-reply.ts'
+import { nextWords } from '../benches/scale.ts'
 import { findTypedBench } from '../benches/typed-bench.server.ts'
 import type { Watcher } from '../benches/visible-benches.server.ts'
 import { type Database, type Transaction, write } from '../db/client.server.ts'
@@ -25,7 +26,7 @@ export async function typeReading(
 ): Promise<Answered> {
   const found = await findTypedBench(db, { benchId, person, now })
   if ('answered' in found) return found.answered
-  const { revision, scale } = found.bench
+  const { revision } = found.bench
   const parsed = typedReadingFormSchema(found.bench).safeParse(Object.fromEntries(form))
   if (!parsed.success) return { status: 400, reply: fieldErrors(z.flattenError(parsed.error).fieldErrors) }
   const { volts, amps, polarity } = parsed.data
@@ -65,8 +66,7 @@ export async function typeReading(
         sentence: 'Tick the checklist of this run first: what it asks has to hold before a voltage is on.',
       }),
     }
-  const next = scale.kind === 'rungs' ? 'Now choose the rung that the beam meets.' : 'Now read both edges.'
-  return { status: 200, reply: done(`Entered as reading ${number}. ${next}`) }
+  return { status: 200, reply: done(`Entered as reading ${number}. ${nextWords(found.bench)}`) }
 }
 
 async function nextNumber(tx: Transaction, runId: string): Promise<number> {
