@@ -17,6 +17,7 @@ export default [
       route('log', 'routes/benches/log.tsx'),
       route('planner', 'routes/benches/planner.tsx'),
       route('stability', 'routes/benches/stability.tsx'),
+      route('relation', 'routes/benches/relation.tsx'),
       route('commands', 'routes/benches/commands.ts'),
       route('runs', 'routes/benches/runs.ts'),
       route('readings', 'routes/benches/readings.ts'),

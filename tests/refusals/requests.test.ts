@@ -79,6 +79,7 @@ describe('A request that cannot be read', () => {
     '/api/tickets',
     '/benches/bench-1/commands',
     '/benches/bench-1/readings/none/edges',
+    '/benches/bench-1/relation',
     '/runs/import',
     '/benches/bench-4/checklist',
     '/benches/bench-4/typed-readings',

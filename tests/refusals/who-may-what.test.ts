@@ -7,6 +7,7 @@ import {
   photos,
   plannedSettings,
   readings,
+  relations,
   runs,
   statements,
   strikes,
@@ -107,6 +108,7 @@ const rows = async () => ({
   photoMeasurements: await site.db.$count(photoMeasurements),
   strikes: await site.db.$count(strikes),
   planned: await site.db.$count(plannedSettings),
+  relations: await site.db.$count(relations),
   statements: await site.db.$count(statements),
 })
 
@@ -126,6 +128,17 @@ const sentReadings = {
   content: Buffer.from('V,I,d (cm)\n200,1.5,8.1\n').toString('base64'),
   fileName: 'readings.csv',
   bench: 'bench-1',
+}
+
+/** A relation that holds, and so is stored. */
+const ownRelation = {
+  anodeVoltage: 'V',
+  coilCurrent: 'I',
+  beamRadius: 'r',
+  turns: 'N',
+  coilRadius: 'R',
+  magneticConstant: 'μ₀',
+  formula: '2 V (5/4)³ R² / (μ₀ N I r)²',
 }
 
 /** Every route with everyone: nobody signed in, a student of another class, a student, an instructor, a technician. */
@@ -148,6 +161,8 @@ const table: Row[] = [
   ['GET', `${bench}/log`, [302, 404, 200, 200, 200]],
   ['GET', `${bench}/planner`, [302, 404, 200, 200, 200]],
   ['GET', `${bench}/stability`, [302, 404, 200, 200, 200]],
+  ['GET', `${bench}/relation`, [302, 404, 200, 200, 200]],
+  ['POST', `${bench}/relation`, [401, 404, 200, 200, 200], ownRelation],
   ['GET', `${bench}/commands`, [302, 302, 302, 302, 302]],
   ['POST', `${bench}/commands`, [401, 404, 200, 200, 200], { kind: 'take-controls' }],
   ['POST', `${bench}/commands`, [401, 404, 403, 200, 200], { kind: 'take-over' }],

@@ -88,6 +88,19 @@ describe('A form of a bench that a page without scripts sends', () => {
     expect(response.status).toBe(status)
   })
 
+  it('shows what a check of a formula says on the page itself, with what was typed', async () => {
+    const fields = { anodeVoltage: 'V', beamRadius: 'r<b>', formula: '2 V / <script>' }
+    const wrong = await post(`${benchPage}/relation`, fields)
+    expect(wrong.response.status).toBe(400)
+    const html = await wrong.response.text()
+    expect(html).toContain('A symbol begins with a Latin or Greek letter')
+    expect(html).toContain('2 V / &lt;script&gt;')
+    expect(html).not.toMatch(/r<b>|<script>\s*</)
+    const checked = await post(`${benchPage}/relation`, { anodeVoltage: 'V', formula: '2 V' })
+    expect(checked.response.status).toBe(200)
+    expect(await checked.response.text()).toContain('It does not hold yet.')
+  })
+
   it('shows a file of readings on the page itself, and nothing in it is more than text', async () => {
     const file =
       'V,I,d (cm),<img src=x onerror=alert(1)>\n=HYPERLINK("http://elsewhere.test"),1.5,8.1,"<script>1</script>"\n'

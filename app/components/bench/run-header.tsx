@@ -26,6 +26,9 @@ export function RunHeader({ view }: { view: BenchView | TypedBenchView }) {
         <Link to={href('/benches/:benchId/planner', { benchId: view.bench.id })} className="link-alone">
           Planner
         </Link>
+        <Link to={href('/benches/:benchId/relation', { benchId: view.bench.id })} className="link-alone">
+          Relation
+        </Link>
         {run && view.readings.length > 0 && (
           <Link to={href('/runs/:runId/analysis', { runId: run.id })} className="link-alone">
             Analysis of this run
