@@ -1,4 +1,3 @@
-import { mkdirSync } from 'node:fs'
 import type { Page } from 'playwright/test'
 import { openDatabase } from '#app/db/client.server.ts'
 import { demoTypedBench } from '#app/db/demo-benches.ts'
@@ -6,11 +5,8 @@ import { benches, benchRevisions } from '#app/db/schema.ts'
 import type { TypedBench } from '#app/protocol/bench-config.ts'
 import type { Site } from '#tests/support/site.ts'
 import { acknowledgeCautions } from './bench-steps.ts'
+import { expectEveryLook } from './every-look.ts'
 import { expect, expectAccessible, test } from './fixtures.ts'
-
-const pictures = 'test-results/pictures'
-const phone = { width: 360, height: 800 }
-const desk = { width: 1280, height: 900 }
 
 async function tickAll(page: Page): Promise<void> {
   for (const box of await page.getByRole('checkbox').all()) await box.check()
@@ -24,27 +20,10 @@ async function typeMeters(page: Page, volts: string, amps: string): Promise<void
   await page.getByRole('button', { name: 'Enter the reading' }).click()
 }
 
-/** Looks at the page in both room lights, on a phone and on a desk: no sideways scroll, nothing that axe finds. */
-async function expectLooks(page: Page, name: string): Promise<void> {
-  for (const light of ['dark', 'lit'] as const) {
-    await page.getByRole('button', { name: light, exact: true }).click()
-    await expect(page.locator('html')).toHaveAttribute('data-light', light)
-    for (const size of [desk, phone]) {
-      await page.setViewportSize(size)
-      const overflow = await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)
-      await page.screenshot({ path: `${pictures}/${name}-${light}-${size.width}.png`, fullPage: true })
-      expect(overflow, `sideways scroll in px, ${light} ${size.width}`).toBeLessThanOrEqual(0)
-      await expectAccessible(page)
-    }
-    await page.setViewportSize(desk)
-  }
-}
-
 test('At a bench without ports a student ticks the checklist, types the meters, reads the edges, and sees e/m', async ({
   signInAs,
 }) => {
   test.setTimeout(180_000)
-  mkdirSync(pictures, { recursive: true })
   // Of the demo's students the one who acknowledges the cautions in no other story before.
   const page = await signInAs('student', { email: 'partner@lab.test' })
 
@@ -70,7 +49,7 @@ test('At a bench without ports a student ticks the checklist, types the meters, 
     await page.getByRole('checkbox', { name: /^leads/ }).check()
     await page.getByRole('button', { name: 'I have looked at each of these' }).click()
     await expect(page.getByRole('alert').filter({ hasText: 'Not ticked: enclosure, e-stop' })).toBeVisible()
-    await expectLooks(page, 'typed-checklist')
+    await expectEveryLook(page, 'typed-checklist')
     await tickAll(page)
     await expect(page.getByText('It tells what was seen then.')).toBeVisible()
   })
@@ -99,7 +78,7 @@ test('At a bench without ports a student ticks the checklist, types the meters, 
     // 9.5 cm on a ruler 8.5 cm behind the beam, seen from 60 cm.
     await expect(cells.nth(4)).toHaveText('8.15')
     await expect(page.getByRole('region', { name: 'e/m' })).toContainText(/× 10¹¹ C\/kg± \d\.\d+ at 95 %/)
-    await expectLooks(page, 'typed')
+    await expectEveryLook(page, 'typed')
   })
 
   await test.step('the log tells who ticked the checklist', async () => {
@@ -136,7 +115,6 @@ test('At a bench with rungs the one that the beam meets is chosen, with how far 
   site,
   signInAs,
 }) => {
-  mkdirSync(pictures, { recursive: true })
   await commissionRungBench(site)
   const page = await signInAs('technician')
   await acknowledgeCautions(page, 'bench-5')
@@ -144,7 +122,7 @@ test('At a bench with rungs the one that the beam meets is chosen, with how far 
   await typeMeters(page, '200.4', '1.52')
   const row = page.getByRole('row', { name: /^1 / })
   await expect(row.getByText('outer edge of the beam on the rung')).toBeVisible()
-  await expectLooks(page, 'rungs-entry')
+  await expectEveryLook(page, 'rungs-entry')
   await page.getByRole('button', { name: 'Enter the rung' }).click()
   await expect(row.getByRole('alert').filter({ hasText: 'Choose the rung' })).toBeVisible()
   await row.getByRole('radio', { name: '8 cm' }).check()
