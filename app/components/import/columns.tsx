@@ -9,7 +9,7 @@ export function Columns({ preview }: { preview: ImportPreview }) {
   const { headings, samples, choice } = preview
   return (
     <ImportSection title="What the columns hold">
-      <ol className="grid gap-x-6 gap-y-4 sm:grid-cols-[repeat(auto-fill,minmax(230px,1fr))]">
+      <ol className="grid gap-x-6 gap-y-4 sm:grid-cols-[repeat(auto-fill,minmax(290px,1fr))]">
         {headings.map((heading, i) => (
           // biome-ignore lint/suspicious/noArrayIndexKey: a column is told by its place alone
           <li key={i} className="grid min-w-0 content-start gap-1.5 border-l border-edge pl-3">

@@ -8,7 +8,12 @@ type Props = { file: ImportedRunView['file']; revision: number | null }
 /** The file and how it was read: what anyone needs to do the same again. */
 export function ImportedFile({ file, revision }: Props) {
   const { mapping, field } = file
-  const stated = Object.entries(mapping.forAll).filter(([, text]) => text.trim() !== '')
+  const unitOf = (...roles: string[]) => mapping.columns.find(({ role }) => roles.includes(role))?.unit ?? ''
+  const stated = [
+    ['voltage', mapping.forAll.voltage, unitOf('voltage')],
+    ['current', mapping.forAll.current, unitOf('current')],
+    ['length', mapping.forAll.length, unitOf('diameter', 'radius', 'left')],
+  ].filter(([, text]) => text?.trim())
   return (
     <ImportSection title="The file, and how it was read">
       <dl className="grid gap-x-6 gap-y-1.5 sm:grid-cols-[14rem_minmax(0,1fr)]">
@@ -35,7 +40,7 @@ export function ImportedFile({ file, revision }: Props) {
             .join('; ')}
         </Entry>
         <Entry name="uncertainties">
-          {stated.map(([what, text]) => `${what} ${text} for all rows`).join(', ')}
+          {stated.map(([what, text, unit]) => `${what} ± ${text} ${unit} for all rows`).join(', ')}
           {stated.length > 0 && '; '}
           {statements[mapping.statedAs].words}, where any are stated
         </Entry>
