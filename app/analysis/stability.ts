@@ -3,6 +3,8 @@ import { type MannKendall, mannKendall, theilSen } from '#app/statistics/trend.t
 
 /** A stretch of one channel without a gap, at a steady interval. */
 export type Stretch = { values: number[]; intervalSeconds: number }
+/** With the moment of its last value, on the clock of the trace; null where it is empty. */
+export type EndedStretch = Stretch & { endSeconds: number | null }
 
 export type Stability = {
   curve: AllanPoint[]
@@ -30,13 +32,14 @@ const gapIntervals = 2.5
 export function newestStretch(trace: {
   seconds: readonly number[]
   values: readonly (number | null)[]
-}): Stretch {
+}): EndedStretch {
   const { seconds, values } = trace
   const steps: number[] = []
   for (let i = 1; i < seconds.length; i++) steps.push((seconds[i] as number) - (seconds[i - 1] as number))
   steps.sort((a, b) => a - b)
   const intervalSeconds = steps[steps.length >> 1] ?? 0
   const stretch: number[] = []
+  let endSeconds: number | null = null
   for (let i = seconds.length - 1; i >= 0; i--) {
     const value = values[i]
     if (value === null || value === undefined) {
@@ -47,9 +50,10 @@ export function newestStretch(trace: {
       stretch.length > 0 &&
       (seconds[i + 1] as number) - (seconds[i] as number) > gapIntervals * intervalSeconds
     if (isGap) break
+    endSeconds ??= seconds[i] as number
     stretch.push(value)
   }
-  return { values: stretch.reverse(), intervalSeconds }
+  return { values: stretch.reverse(), intervalSeconds, endSeconds }
 }
 
 /**

@@ -39,7 +39,16 @@ describe('The stability of a channel', () => {
     const late = seconds.map((at, i) => (i < 30 ? at : at + 5))
     expect(newestStretch({ seconds: late, values: seconds.map((_, i) => i) }).values[0]).toBe(30)
     expectNear(newestStretch({ seconds, values }).intervalSeconds, 0.1, { rel: 1e-9 })
-    expect(newestStretch({ seconds: [], values: [] }).values).toEqual([])
+    expect(newestStretch({ seconds: [], values: [] })).toEqual({
+      values: [],
+      intervalSeconds: 0,
+      endSeconds: null,
+    })
+    const gone = values.map((value, i) => (i < 45 ? value : null))
+    expect(newestStretch({ seconds, values: gone })).toMatchObject({
+      values: values.slice(21, 45),
+      endSeconds: seconds[44],
+    })
   })
 
   it('is refused for too short a record', () => {

@@ -4,7 +4,7 @@ import { coilsWords } from './coils-words.ts'
 /** What the check says: how the formula was read, and that it holds or which kinds of slip are in it. */
 export function Checked({ check, coils }: { check: RelationReply['check']; coils: RelationView['coils'] }) {
   return (
-    <div role="status" className="grid max-w-prose gap-2 empty:hidden">
+    <div role="status" className="grid max-w-prose gap-2">
       {check?.readAs && (
         <p>
           <span className="text-ink-soft">Read as</span>{' '}

@@ -6,7 +6,7 @@ import { LocalTime } from '../local-time.tsx'
 import { coilsWords } from './coils-words.ts'
 
 const cell = 'px-2 py-1'
-const heads = ['reading', 'anode V', 'each coil A', 'd cm', 'by your relation', 'by the logbook']
+const heads = ['reading', 'yours', 'logbook', 'anode V', 'each coil A', 'd cm']
 
 /** The relation of a person that held, and what it makes of the readings of the open run. */
 export function OwnValues({ relation, values, coils }: Pick<RelationView, 'relation' | 'values' | 'coils'>) {
@@ -52,18 +52,18 @@ function Values({ values }: { values: OwnValue[] | null }) {
                 {it.number}
                 {it.polarity === -1 && <span className="text-ink-soft"> −B</span>}
               </th>
+              <td className={`${cell} text-beam`}>{fixed(it.own && it.own / 1e11, 3)}</td>
+              <td className={cell}>{it.logbook ? inElevens(it.logbook) : '—'}</td>
               <td className={cell}>{fixed(it.anodeVolts, 2)}</td>
               <td className={cell}>{fixed(it.coilAmps, 4)}</td>
               <td className={cell}>{fixed(it.diameterMetres * 100, 2)}</td>
-              <td className={`${cell} text-beam`}>{fixed(it.own && it.own / 1e11, 3)}</td>
-              <td className={cell}>{it.logbook ? inElevens(it.logbook) : '—'}</td>
             </tr>
           ))}
         </tbody>
       </ScrollTable>
       <p className="max-w-prose text-[12.5px] text-ink-soft">
-        e/m in 10¹¹ C/kg. Your relation takes the field of the middle for all of the orbit, and V and I as the
-        meters show them; the logbook goes on from there.
+        Yours and the logbook’s e/m in 10¹¹ C/kg. Your relation takes the field of the middle for all of the
+        orbit, and V and I as the meters show them; the logbook goes on from there.
       </p>
     </>
   )

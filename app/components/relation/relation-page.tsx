@@ -17,7 +17,7 @@ export function RelationPage({ view, answered }: Props) {
   const typed = reply?.typed ?? view.relation
   const isUnread = reply?.check?.readAs === null
   return (
-    <div className={`grid max-w-4xl grid-cols-1 gap-6 ${view.isRealBench ? 'dark:[--beam:var(--ink)]' : ''}`}>
+    <div className={`grid max-w-6xl grid-cols-1 gap-6 ${view.isRealBench ? 'dark:[--beam:var(--ink)]' : ''}`}>
       <header className="grid gap-1">
         <h1 className="text-xl font-bold">Your own relation for e/m</h1>
         <p className="max-w-prose text-ink-soft">
@@ -25,38 +25,49 @@ export function RelationPage({ view, answered }: Props) {
           own symbols. The check names the kind of a slip, and leaves the finding to you.
         </p>
       </header>
-      <Form method="post" preventScrollReset replace className="grid grid-cols-1 gap-4">
-        <SymbolTable typed={typed?.symbols ?? {}} errors={reply?.errors ?? {}} />
-        <p className="text-[12.5px] text-ink-soft">Leave empty what your formula does without.</p>
-        <div className="grid max-w-xl gap-1">
-          <label htmlFor={id} className="font-medium">
-            e/m =
-          </label>
-          <textarea
-            id={id}
-            name="formula"
-            rows={2}
-            defaultValue={typed?.text ?? ''}
-            autoComplete="off"
-            autoCapitalize="none"
-            spellCheck={false}
-            aria-describedby={`${id}-hint`}
-            aria-invalid={isUnread || undefined}
-            onKeyDown={submitOnEnter}
-            className="w-full px-3 py-2"
-          />
-          <p id={`${id}-hint`} className="text-[12.5px] text-ink-soft">
-            As in 3 a (b + c)² / d^(1/2): a space or · multiplies, ^ raises, sqrt( … ) takes the root. Numbers
-            with a decimal point; π is known.
-          </p>
+      <Form
+        method="post"
+        preventScrollReset
+        replace
+        className="grid grid-cols-1 gap-x-12 gap-y-5 lg:grid-cols-[minmax(0,5fr)_minmax(0,6fr)]"
+      >
+        <div className="grid content-start gap-2">
+          <SymbolTable typed={typed?.symbols ?? {}} errors={reply?.errors ?? {}} />
+          <p className="text-[12.5px] text-ink-soft">Leave empty what your formula does without.</p>
         </div>
-        <div className="flex flex-wrap items-center gap-x-4 gap-y-2">
-          <button type="submit" className="button button-main max-sm:w-full" disabled={isBusy}>
+        <div className="grid grid-cols-1 content-start gap-4">
+          <div className="grid gap-1">
+            <label htmlFor={id} className="font-medium">
+              e/m =
+            </label>
+            <textarea
+              id={id}
+              name="formula"
+              rows={2}
+              defaultValue={typed?.text ?? ''}
+              autoComplete="off"
+              autoCapitalize="none"
+              spellCheck={false}
+              aria-describedby={`${id}-hint`}
+              aria-invalid={isUnread || undefined}
+              onKeyDown={submitOnEnter}
+              className="w-full px-3 py-2"
+            />
+            <p id={`${id}-hint`} className="text-[12.5px] text-ink-soft">
+              As in 3 a (b + c)² / d^(1/2): a space or · multiplies, ^ raises, sqrt( … ) takes the root.
+              Numbers with a decimal point; π is known.
+            </p>
+          </div>
+          <button
+            type="submit"
+            className="button button-main max-sm:w-full sm:justify-self-start"
+            disabled={isBusy}
+          >
             Check
           </button>
+          <Checked check={reply?.check ?? null} coils={view.coils} />
+          {answered && !reply && <AnswerLine reply={answered as ActionReply} />}
         </div>
-        <Checked check={reply?.check ?? null} coils={view.coils} />
-        {answered && !reply && <AnswerLine reply={answered as ActionReply} />}
       </Form>
       <OwnValues {...view} />
     </div>

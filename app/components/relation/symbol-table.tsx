@@ -10,7 +10,7 @@ type Props = {
 export function SymbolTable({ typed, errors }: Props) {
   const id = useId()
   return (
-    <table className="w-full max-w-xl border-collapse text-left">
+    <table className="w-full border-collapse text-left">
       <caption className="sr-only">Which of your symbols stands for what</caption>
       <thead>
         <tr className="border-b border-ink text-[12.5px] text-ink-soft">
