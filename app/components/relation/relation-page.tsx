@@ -54,8 +54,8 @@ export function RelationPage({ view, answered }: Props) {
               className="w-full px-3 py-2"
             />
             <p id={`${id}-hint`} className="text-[12.5px] text-ink-soft">
-              As in 3 a (b + c)² / d^(1/2): a space or · multiplies, ^ raises, sqrt( … ) takes the root.
-              Numbers with a decimal point; π is known.
+              As in 3 a (b + c)² / d^(1/2): a space or · multiplies, ^ raises, sqrt(a) takes the root. Numbers
+              with a decimal point; π is known.
             </p>
           </div>
           <button
